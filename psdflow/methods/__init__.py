@@ -1,0 +1,90 @@
+"""The catalogue: every published method with its source, range and scatter.
+
+A formula lives in one function of the package that uses it; its entry here says where it comes from
+and where it holds. Results name their entry by ``key``. The tables are split by subject
+(``sizes``, ``fluidization``, ``cohesion``, ``carryover``) to keep them readable.
+"""
+
+from dataclasses import dataclass, field
+from functools import cache
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+
+@dataclass(frozen=True)
+class Method:
+    """One published method.
+
+    Attributes
+    ----------
+    key
+        The name results carry, e.g. ``wen-yu-1966``.
+    quantity
+        The sheet key it gives, e.g. ``u_mf``.
+    name
+        As the field calls it: ``Wen & Yu 1966``.
+    source
+        Author, year, journal or book, equation or table.
+    ranges
+        Published range of each variable in SI units: ``{"diameter": (51e-6, 0.05)}``. Empty when the
+        source states none that could be found.
+    scatter
+        Standard deviation of ln(measured / predicted) on foreign data, the method's own doubt.
+    checked
+        ``"looked up"`` or ``"from memory"``: how the coefficients were obtained.
+    diameter
+        Which size it takes: ``"sv"`` (surface-volume), ``"v"`` (volume-equivalent), ``""`` (none).
+    note
+        What a user must know: misquotations, traps, why a choice was made.
+    """
+
+    key: str
+    quantity: str
+    name: str
+    source: str
+    ranges: dict[str, tuple[float, float]] = field(default_factory=dict)
+    scatter: float = 0.0
+    checked: str = "from memory"
+    diameter: str = ""
+    note: str = ""
+
+
+@cache
+def catalogue() -> dict[str, Method]:
+    """Every method by key, in the order of the pipeline."""
+    from psdflow.methods import carryover, cohesion, fluidization, sizes
+
+    entries = [*sizes.METHODS, *fluidization.METHODS, *cohesion.METHODS, *carryover.METHODS]
+    table = {entry.key: entry for entry in entries}
+    if len(table) != len(entries):
+        raise AssertionError("two methods share a key")
+    return table
+
+
+def method(key: str) -> Method:
+    """The catalogue entry of ``key``."""
+    return catalogue()[key]
+
+
+def in_range(key: str, **variables: ArrayLike | None) -> NDArray[np.bool_]:
+    """Whether a case lies inside a method's published range.
+
+    Parameters
+    ----------
+    key
+        Catalogue key.
+    **variables
+        Values in SI units of every variable the method's ``ranges`` name, any broadcastable shapes;
+        others are ignored. ``None`` means unknown: it can't put the case out of range.
+
+    Returns
+    -------
+    Boolean array of the broadcast shape.
+    """
+    inside: NDArray[np.bool_] = np.array(True)
+    for name, (low, high) in method(key).ranges.items():
+        value = variables[name]
+        if value is not None:
+            inside = inside & (np.asarray(value) >= low) & (np.asarray(value) <= high)
+    return inside

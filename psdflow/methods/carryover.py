@@ -1,0 +1,5 @@
+"""Methods of psdflow.carryover."""
+
+from psdflow.methods import Method
+
+METHODS: tuple[Method, ...] = ()

@@ -1,0 +1,5 @@
+"""Methods of psdflow.cohesion."""
+
+from psdflow.methods import Method
+
+METHODS: tuple[Method, ...] = ()

@@ -1,0 +1,5 @@
+"""Methods of psdflow.fluidization."""
+
+from psdflow.methods import Method
+
+METHODS: tuple[Method, ...] = ()

@@ -1,0 +1,5 @@
+"""Methods of psdflow.sizes."""
+
+from psdflow.methods import Method
+
+METHODS: tuple[Method, ...] = ()
