@@ -1,0 +1,140 @@
+"""The duty document: where and how the powder is fluidized."""
+
+from functools import cached_property
+from typing import Literal
+
+from pydantic import Field, model_validator
+
+from psdflow import fluid as fluids
+from psdflow.documents import (
+    Density,
+    Document,
+    Length,
+    MassRate,
+    Pressure,
+    Temperature,
+    Time,
+    Velocity,
+    Viscosity,
+    require,
+)
+from psdflow.errors import InputError
+from psdflow.fluid import Fluid
+
+
+class FluidState(Document):
+    """Exactly one of ``gas``, ``mixture``, ``liquid``, or ``density`` with ``viscosity``.
+
+    Named fluids need ``temperature`` and absolute ``pressure``; ``1.2 barg`` adds one standard atmosphere.
+    """
+
+    gas: str | None = None
+    mixture: dict[str, float] | None = None
+    liquid: str | None = None
+    density: Density | None = None
+    viscosity: Viscosity | None = None
+    phase: Literal["gas", "liquid"] | None = None
+    temperature: Temperature | None = None
+    pressure: Pressure | None = None
+
+    @model_validator(mode="after")
+    def _one_way(self) -> "FluidState":
+        given = self.density is not None or self.viscosity is not None
+        ways = [self.gas is not None, self.mixture is not None, self.liquid is not None, given]
+        if sum(ways) != 1:
+            raise InputError("say exactly one of gas:, mixture:, liquid:, or density: with viscosity:")
+        if given:
+            if self.density is None or self.viscosity is None:
+                raise InputError("density: and viscosity: are needed together")
+            require(self.density.value > 0, "density", f"{self.density.value:g} kg/m³", "above 0")
+            require(self.viscosity.value > 0, "viscosity", f"{self.viscosity.value:g} Pa·s", "above 0")
+        elif self.temperature is None or self.pressure is None:
+            missing = "temperature" if self.temperature is None else "pressure"
+            raise InputError(f"{missing}: missing; a named fluid needs temperature and absolute pressure")
+        _ = self.resolved
+        return self
+
+    @cached_property
+    def resolved(self) -> Fluid:
+        """Density and viscosity at this state."""
+        t = self.temperature.value if self.temperature else None
+        p = self.pressure.value if self.pressure else None
+        if self.density is not None and self.viscosity is not None:
+            phase = self.phase or ("liquid" if self.density.value > 300 else "gas")
+            return Fluid("given fluid", phase, self.density.value, self.viscosity.value, t, p)
+        if t is None or p is None:
+            raise InputError("a named fluid needs temperature and absolute pressure")
+        if self.gas is not None:
+            return fluids.gas(self.gas, temperature=t, pressure=p)
+        if self.mixture is not None:
+            return fluids.gas_mixture(self.mixture, temperature=t, pressure=p)
+        return fluids.liquid(self.liquid or "", temperature=t, pressure=p)
+
+
+class Bed(Document):
+    """The vessel: inner diameter, height of the settled bed, free height from its surface to the outlet."""
+
+    diameter: Length
+    settled_height: Length | None = None
+    freeboard_height: Length | None = None
+    distributor: Literal["perforated plate", "porous plate", "nozzle plate"] | None = None
+    hole_pitch: Length | None = None
+
+    @model_validator(mode="after")
+    def _possible(self) -> "Bed":
+        for key in ("diameter", "settled_height", "freeboard_height", "hole_pitch"):
+            length = getattr(self, key)
+            if length is not None:
+                require(1e-3 <= length.value <= 100, key, f"{length.value:g} m", "1 mm to 100 m")
+        return self
+
+
+class Feed(Document):
+    """Powder fed to the bed."""
+
+    rate: MassRate
+
+
+class Cyclone(Document):
+    """One cyclone stage: a standard ``design`` by name and the body diameter, or all dimensions.
+
+    ``count`` equal cyclones share the gas in parallel.
+    """
+
+    design: str | None = None
+    body_diameter: Length
+    count: int = Field(default=1, ge=1, le=200)
+    returns_to: Literal["bed", "bin"] = "bin"
+    inlet_height: Length | None = None
+    inlet_width: Length | None = None
+    outlet_diameter: Length | None = None
+    outlet_length: Length | None = None
+    cylinder_height: Length | None = None
+    total_height: Length | None = None
+    dust_outlet_diameter: Length | None = None
+
+
+class Duty(Document):
+    """Fluid state, vessel, superficial velocity at bed conditions; feed, hours and cyclones if there are any."""
+
+    name: str
+    fluid: FluidState
+    velocity: Velocity
+    bed: Bed | None = None
+    feed: Feed | None = None
+    operating_hours: Time | None = None
+    cyclones: tuple[Cyclone, ...] = Field(default=(), max_length=3)
+
+    @model_validator(mode="after")
+    def _possible(self) -> "Duty":
+        require(0 < self.velocity.value <= 50, "velocity", f"{self.velocity.value:g} m/s", "above 0, at most 50 m/s")
+        if self.feed is not None:
+            require(self.feed.rate.value > 0, "feed.rate", f"{self.feed.rate.value:g} kg/s", "above 0")
+        if self.operating_hours is not None:
+            hours = self.operating_hours.value / 3600
+            require(0 < hours <= 8784, "operating_hours", f"{hours:g} h", "above 0, at most 8784 h a year")
+        if self.cyclones and self.fluid.resolved.phase == "liquid":
+            raise InputError("cyclones: gas cyclones don't apply to a liquid; leave the key out")
+        if self.cyclones and self.bed is None:
+            raise InputError("bed: missing; its diameter gives the gas flow to the cyclones")
+        return self
