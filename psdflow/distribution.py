@@ -199,8 +199,8 @@ class SizeDistribution:
         fine = np.concatenate([inner.reshape(*logs.shape[:-1], -1), logs[..., -1:]], axis=-1)
         return replace(self, edges=np.exp(fine), shares=np.repeat(self.shares, parts, axis=-1) / parts)
 
-    def lot(self, index: int) -> "SizeDistribution":
-        """One lot of a history: leading axis 0 at ``index``."""
+    def lot(self, index: int | slice) -> "SizeDistribution":
+        """One lot of a history, or several by a slice, along leading axis 0."""
         edges = self.edges[index] if self.edges.ndim > 1 else self.edges
         shares = self.shares[index] if self.shares.ndim > 1 else self.shares
         return replace(self, edges=edges, shares=shares)

@@ -233,7 +233,7 @@ def _gas_density(parts: dict[str, float], temperature: float, pressure: float) -
             f"the gas is too dense for the virial equation at {pressure / 1e5:.3g} bar and "
             f"{temperature - 273.15:.1f} °C (compressibility {1 + departure:.2f}); give density: and viscosity: instead"
         )
-    warnings = ()
+    warnings: tuple[str, ...] = ()
     if abs(departure) > 0.10:
         warnings = (
             f"gas density is far from ideal (compressibility {1 + departure:.2f}); good to a few per cent only",

@@ -97,10 +97,10 @@ class Measured:
 
 
 @cache
-def _registry() -> "pint.UnitRegistry":
+def _registry() -> "pint.UnitRegistry[float]":
     import pint
 
-    registry: pint.UnitRegistry = pint.UnitRegistry(None)
+    registry: pint.UnitRegistry[float] = pint.UnitRegistry(None)
     registry.load_definitions(_DEFINITIONS.strip().splitlines())
     return registry
 

@@ -12,7 +12,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from psdflow.fluidization.numbers import GRAVITY
-from psdflow.fluidization.numerics import sinking
+from psdflow.fluidization.numerics import floats, sinking
 
 GROUPS = "CABD"  # finest to coarsest: a group is coded by its place here
 
@@ -48,9 +48,9 @@ def geldart_ab_size(
     Geldart rounded it for air at 20 °C to ``Δρ d = 0.225 kg/m²``; the unrounded constant is 0.2294.
     Source: Geldart 1973, eq. 5 (looked up in a transcription).
     """
-    difference = sinking(particle_density, fluid_density) - np.asarray(fluid_density, float)
+    difference = sinking(particle_density, fluid_density) - floats(fluid_density)
     with np.errstate(divide="ignore"):
-        return MINIMUM_BUBBLING_RATE * np.asarray(fluid_viscosity, float) / (U_MF_CONSTANT * GRAVITY * difference)
+        return MINIMUM_BUBBLING_RATE * floats(fluid_viscosity) / (U_MF_CONSTANT * GRAVITY * difference)
 
 
 def geldart_bd_size(
@@ -65,9 +65,9 @@ def geldart_bd_size(
     ``sqrt(g d_B/2) = 8e-4 Δρ g d²/(µ ε)``. Rounded by Geldart, air at 20 °C: ``Δρ d² = 1e-3 kg/m``
     (unrounded 1.016e-3). Source: Geldart 1973, eq. 7, "tentative" (looked up in a transcription).
     """
-    difference = sinking(particle_density, fluid_density) - np.asarray(fluid_density, float)
-    bubble_rise = np.sqrt(GRAVITY * D_BUBBLE_DIAMETER / 2.0)
-    top = bubble_rise * np.asarray(fluid_viscosity, float) * np.asarray(voidage_mf, float)
+    difference = sinking(particle_density, fluid_density) - floats(fluid_density)
+    bubble_rise = floats(np.sqrt(GRAVITY * D_BUBBLE_DIAMETER / 2.0))
+    top = bubble_rise * floats(fluid_viscosity) * floats(voidage_mf)
     with np.errstate(divide="ignore"):
         return np.sqrt(top / (U_MF_CONSTANT * GRAVITY * difference))
 
@@ -85,9 +85,9 @@ def abrahamsen_geldart_ab_size(
     as in ``minimum_bubbling_abrahamsen_geldart``.
     Source: Abrahamsen & Geldart 1980 (looked up in two codes and a table).
     """
-    rho_f, mu = np.asarray(fluid_density, float), np.asarray(fluid_viscosity, float)
+    rho_f, mu = floats(fluid_density), floats(fluid_viscosity)
     difference = sinking(particle_density, fluid_density) - rho_f
-    fines = np.minimum(np.asarray(fines_45um, float), FINES_LIMIT)
+    fines = np.minimum(floats(fines_45um), FINES_LIMIT)
     with np.errstate(divide="ignore"):
         return (2300.0 * rho_f**0.126 * mu**0.523 * np.exp(0.716 * fines) / (GRAVITY * difference) ** 0.934) ** 1.25
 
@@ -96,7 +96,7 @@ def grace_ab_size(
     *, particle_density: ArrayLike, fluid_density: ArrayLike, fluid_viscosity: ArrayLike
 ) -> NDArray[np.float64]:
     """A/B size (m), ``d* = 101 (Δρ/ρ_g)^-0.425``. Source: Grace 1986 (from memory)."""
-    rho_f = np.asarray(fluid_density, float)
+    rho_f = floats(fluid_density)
     with np.errstate(divide="ignore"):
         ratio = (sinking(particle_density, fluid_density) - rho_f) / rho_f
         return 101.0 * ratio**-0.425 * _viscous_length(particle_density, rho_f, fluid_viscosity)
@@ -106,30 +106,30 @@ def grace_bd_size(
     *, particle_density: ArrayLike, fluid_density: ArrayLike, fluid_viscosity: ArrayLike
 ) -> NDArray[np.float64]:
     """B/D size (m), Ar = 1.45e5. Source: Grace 1986 (from memory)."""
-    return np.cbrt(1.45e5) * _viscous_length(particle_density, fluid_density, fluid_viscosity)
+    return floats(np.cbrt(1.45e5)) * _viscous_length(particle_density, fluid_density, fluid_viscosity)
 
 
 def molerus_ca_size(
     *, particle_density: ArrayLike, fluid_density: ArrayLike, cohesion_force: ArrayLike = WEAK_CONTACT_FORCE
 ) -> NDArray[np.float64]:
     """C/A size (m), ``10 Δρ g d³/F_H = 0.01`` (F_H in N). Source: Molerus 1982 (from memory)."""
-    difference = sinking(particle_density, fluid_density) - np.asarray(fluid_density, float)
+    difference = sinking(particle_density, fluid_density) - floats(fluid_density)
     with np.errstate(divide="ignore"):
-        return np.cbrt(0.01 * np.asarray(cohesion_force, float) / (10.0 * GRAVITY * difference))
+        return np.cbrt(0.01 * floats(cohesion_force) / (10.0 * GRAVITY * difference))
 
 
 def molerus_ab_size(
     *, particle_density: ArrayLike, fluid_density: ArrayLike, cohesion_force: ArrayLike = WEAK_CONTACT_FORCE
 ) -> NDArray[np.float64]:
     """A/B size (m), ``(π/6) Δρ g d³/F_H = 0.16`` (F_H in N). Source: Molerus 1982 (from memory)."""
-    difference = sinking(particle_density, fluid_density) - np.asarray(fluid_density, float)
+    difference = sinking(particle_density, fluid_density) - floats(fluid_density)
     with np.errstate(divide="ignore"):
-        return np.cbrt(0.16 * np.asarray(cohesion_force, float) / (np.pi / 6.0 * GRAVITY * difference))
+        return np.cbrt(0.16 * floats(cohesion_force) / (np.pi / 6.0 * GRAVITY * difference))
 
 
 def molerus_bd_size(*, particle_density: ArrayLike, fluid_density: ArrayLike) -> NDArray[np.float64]:
     """B/D size (m), ``Δρ g d = 15.3 Pa``. Source: Molerus 1982 (from memory)."""
-    difference = sinking(particle_density, fluid_density) - np.asarray(fluid_density, float)
+    difference = sinking(particle_density, fluid_density) - floats(fluid_density)
     with np.errstate(divide="ignore"):
         return 15.3 / (GRAVITY * difference)
 
@@ -215,7 +215,7 @@ def group_index(*, diameter_sv: ArrayLike, boundaries: Boundaries) -> NDArray[np
     ValueError
         If a size or boundary is ``nan``: no group can be given.
     """
-    d = np.asarray(diameter_sv, float)
+    d = floats(diameter_sv)
     ca, ab, bd = boundaries
     if np.any(np.isnan(d)) or any(np.any(np.isnan(line)) for line in boundaries):
         raise ValueError("a size or boundary is nan: the powder must be heavier than the fluid")
@@ -231,7 +231,7 @@ def _viscous_length(
     particle_density: ArrayLike, fluid_density: ArrayLike, fluid_viscosity: ArrayLike
 ) -> NDArray[np.float64]:
     """``[µ²/(ρ_f Δρ g)]^(1/3)`` in m; a size divided by it is d* = Ar^(1/3)."""
-    rho_f, mu = np.asarray(fluid_density, float), np.asarray(fluid_viscosity, float)
+    rho_f, mu = floats(fluid_density), floats(fluid_viscosity)
     difference = sinking(particle_density, fluid_density) - rho_f
     with np.errstate(divide="ignore"):
         return np.cbrt(mu**2 / (rho_f * difference * GRAVITY))

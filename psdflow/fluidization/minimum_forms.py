@@ -12,7 +12,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from psdflow.fluidization.numbers import GRAVITY, archimedes
-from psdflow.fluidization.numerics import sinking, solve_log
+from psdflow.fluidization.numerics import floats, sinking, solve_log
 
 
 class Case(NamedTuple):
@@ -36,8 +36,8 @@ def case(
     diameter: ArrayLike, particle_density: ArrayLike, fluid_density: ArrayLike, fluid_viscosity: ArrayLike
 ) -> Case:
     """Collect the inputs of one or many cases."""
-    d, rho_p = np.asarray(diameter, float), sinking(particle_density, fluid_density)
-    rho_f, mu = np.asarray(fluid_density, float), np.asarray(fluid_viscosity, float)
+    d, rho_p = floats(diameter), sinking(particle_density, fluid_density)
+    rho_f, mu = floats(fluid_density), floats(fluid_viscosity)
     ar = archimedes(diameter=d, particle_density=rho_p, fluid_density=rho_f, fluid_viscosity=mu)
     return Case(d, rho_p, rho_f, mu, rho_p - rho_f, ar)
 

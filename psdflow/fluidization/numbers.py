@@ -35,7 +35,5 @@ def velocity_scale(
     Source: Grace 1986; Kunii & Levenspiel 1991, ch. 3 (looked up).
     """
     rho_p, rho_f = np.asarray(particle_density, float), np.asarray(fluid_density, float)
-    scale: NDArray[np.float64] = np.cbrt(
-        np.asarray(fluid_viscosity, float) * (rho_p - rho_f) * GRAVITY / rho_f**2
-    )
+    scale: NDArray[np.float64] = np.cbrt(np.asarray(fluid_viscosity, float) * (rho_p - rho_f) * GRAVITY / rho_f**2)
     return scale

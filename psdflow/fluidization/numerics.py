@@ -1,4 +1,4 @@
-"""Two helpers every formula of this package shares: a root in log space, and grains lighter than the fluid."""
+"""What every formula of this package shares: arrays of floats, grains that float, a root in log space."""
 
 from collections.abc import Callable
 
@@ -9,9 +9,14 @@ MAX_STEPS = 60
 RESIDUAL = 3e-13  # in ln units, so a relative error; a few hundred roundings of a float
 
 
+def floats(value: ArrayLike) -> NDArray[np.float64]:
+    """``value`` as an array of floats."""
+    return np.asarray(value, float)
+
+
 def sinking(particle_density: ArrayLike, fluid_density: ArrayLike) -> NDArray[np.float64]:
     """Particle density (kg/m³), ``nan`` where the grain is lighter than the fluid and would float."""
-    rho_p, rho_f = np.asarray(particle_density, float), np.asarray(fluid_density, float)
+    rho_p, rho_f = floats(particle_density), floats(fluid_density)
     return np.where(rho_p >= rho_f, rho_p, np.nan)
 
 

@@ -11,7 +11,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from psdflow.fluidization.numbers import GRAVITY, archimedes, velocity_scale
-from psdflow.fluidization.numerics import sinking, solve_log
+from psdflow.fluidization.numerics import floats, sinking, solve_log
 
 DEFAULT_LAW = "haider-levenspiel-1989"
 
@@ -22,13 +22,13 @@ def drag_schiller_naumann(*, reynolds: ArrayLike, sphericity: ArrayLike = 1.0) -
     The source switches to 0.44 at Re 1000, where the curve reads 0.438; taking the larger of the two
     keeps the law continuous. Source: Schiller & Naumann 1933/35 (looked up in code quoting it).
     """
-    re = np.asarray(reynolds, float) + 0.0 * np.asarray(sphericity, float)
+    re = floats(reynolds) + 0.0 * floats(sphericity)
     return np.maximum(24.0 / re * (1.0 + 0.15 * re**0.687), 0.44)
 
 
 def drag_clift_gauvin(*, reynolds: ArrayLike, sphericity: ArrayLike = 1.0) -> NDArray[np.float64]:
     """Sphere, Re < 3e5. Source: Clift & Gauvin 1970/71 (looked up in a page quoting it)."""
-    re = np.asarray(reynolds, float) + 0.0 * np.asarray(sphericity, float)
+    re = floats(reynolds) + 0.0 * floats(sphericity)
     return 24.0 / re * (1.0 + 0.15 * re**0.687) + 0.42 / (1.0 + 4.25e4 * re**-1.16)
 
 
@@ -39,7 +39,7 @@ def drag_haider_levenspiel(*, reynolds: ArrayLike, sphericity: ArrayLike = 1.0) 
     to 1 reads up to 5 % higher. Source: Haider & Levenspiel 1989, eq. 4 and the sphere fit (looked up
     in two independent codes).
     """
-    re, phi = np.asarray(reynolds, float), np.asarray(sphericity, float)
+    re, phi = floats(reynolds), floats(sphericity)
     sphere = phi == 1.0
     a = np.where(sphere, 0.1806, np.exp(2.3288 - 6.4581 * phi + 2.4486 * phi**2))
     b = np.where(sphere, 0.6459, 0.0964 + 0.5565 * phi)
@@ -54,7 +54,7 @@ def drag_ganser(*, reynolds: ArrayLike, sphericity: ArrayLike = 1.0) -> NDArray[
     Source: Ganser 1993, eq. 18 and table 7 (looked up in two codes; the logarithm is to base 10 and
     the constant 1.8148, both often misprinted).
     """
-    re, phi = np.asarray(reynolds, float), np.asarray(sphericity, float)
+    re, phi = floats(reynolds), floats(sphericity)
     stokes_shape = 1.0 / (1.0 / 3.0 + 2.0 / 3.0 * phi**-0.5)
     newton_shape = 10.0 ** (1.8148 * np.abs(np.log10(phi)) ** 0.5743)  # log10(phi) <= 0
     x = re * stokes_shape * newton_shape
@@ -75,7 +75,7 @@ def slip_correction(*, diameter: ArrayLike, mean_free_path: ArrayLike) -> NDArra
     Parameters in m, ``Kn = 2 λ/d``. Matters below about 5 µm at 1 atm.
     Source: Davies 1945 (looked up in two articles).
     """
-    knudsen = 2.0 * np.asarray(mean_free_path, float) / np.asarray(diameter, float)
+    knudsen = 2.0 * floats(mean_free_path) / floats(diameter)
     with np.errstate(divide="ignore", over="ignore"):
         return 1.0 + knudsen * (1.257 + 0.400 * np.exp(-1.10 / knudsen))
 
@@ -119,12 +119,12 @@ def terminal_velocity(
     """
     drag, phi = DRAG_LAWS[law], _checked(sphericity)
     rho_p = sinking(particle_density, fluid_density)
-    d, rho_f, mu = np.asarray(diameter, float), np.asarray(fluid_density, float), np.asarray(fluid_viscosity, float)
+    d, rho_f, mu = floats(diameter), floats(fluid_density), floats(fluid_viscosity)
     weight = archimedes(diameter=d, particle_density=rho_p, fluid_density=rho_f, fluid_viscosity=mu)
     with np.errstate(divide="ignore", invalid="ignore"):
         slip = 1.0 if mean_free_path is None else slip_correction(diameter=d, mean_free_path=mean_free_path)
         target = np.log(4.0 / 3.0 * weight * slip)  # Cd Re², and Cd is divided by the slip factor
-        start = np.log(_explicit_reynolds(np.asarray(weight * slip), phi))
+        start = np.log(_explicit_reynolds(floats(weight * slip), phi))
         ln_re = solve_log(lambda y: np.log(drag(reynolds=np.exp(y), sphericity=phi)) + 2.0 * y - target, start)
         return np.where(weight == 0.0, 0.0, np.exp(ln_re) * mu / (rho_f * d))
 
@@ -146,7 +146,7 @@ def size_with_terminal_velocity(
     """
     drag, phi = DRAG_LAWS[law], _checked(sphericity)
     rho_p = sinking(particle_density, fluid_density)
-    u, rho_f, mu = np.asarray(terminal_velocity, float), np.asarray(fluid_density, float), np.asarray(fluid_viscosity, float)
+    u, rho_f, mu = floats(terminal_velocity), floats(fluid_density), floats(fluid_viscosity)
     with np.errstate(divide="ignore", invalid="ignore"):
         group = 4.0 / 3.0 * GRAVITY * (rho_p - rho_f) * mu / (rho_f**2 * u**3)  # Cd/Re
         start = np.log(np.sqrt(24.0 / group) + 0.44 / group + 0.0 * phi)
@@ -159,7 +159,7 @@ def size_with_terminal_velocity(
             return np.log(group) - np.log(cd) + y
 
         if mean_free_path is not None:
-            start = start + 0.0 * np.asarray(mean_free_path, float)
+            start = start + 0.0 * floats(mean_free_path)
         size = np.exp(solve_log(residual, start) + viscous_length)
         return np.where((u == 0.0) & np.isfinite(rho_p), 0.0, size)
 
@@ -190,8 +190,8 @@ def terminal_velocity_stokes(
     *, diameter: ArrayLike, particle_density: ArrayLike, fluid_density: ArrayLike, fluid_viscosity: ArrayLike
 ) -> NDArray[np.float64]:
     """Creeping flow, ``g d² Δρ/(18 µ)`` (m/s); 2 % high at Re 0.1, 13 % at Re 1. Source: Stokes 1851."""
-    difference = sinking(particle_density, fluid_density) - np.asarray(fluid_density, float)
-    return GRAVITY * np.asarray(diameter, float) ** 2 * difference / (18.0 * np.asarray(fluid_viscosity, float))
+    difference = sinking(particle_density, fluid_density) - floats(fluid_density)
+    return GRAVITY * floats(diameter) ** 2 * difference / (18.0 * floats(fluid_viscosity))
 
 
 def _explicit_reynolds(weight: NDArray[np.float64], phi: NDArray[np.float64]) -> NDArray[np.float64]:
@@ -201,7 +201,7 @@ def _explicit_reynolds(weight: NDArray[np.float64], phi: NDArray[np.float64]) ->
 
 
 def _checked(sphericity: ArrayLike) -> NDArray[np.float64]:
-    phi = np.asarray(sphericity, float)
+    phi = floats(sphericity)
     if np.any((phi <= 0.0) | (phi > 1.0)):
         raise ValueError("sphericity must lie above 0 and not above 1")
     return phi

@@ -74,9 +74,7 @@ def specific_surface(
     ``sphericity`` (Wadell) 0..1, ``particle_density`` the envelope density in kg/m³: inner pores don't
     count, so a gas-adsorption surface may be thousands of times larger.
     """
-    return np.asarray(
-        6 / (np.asarray(sphericity, float) * np.asarray(particle_density, float) * d32(distribution))
-    )
+    return np.asarray(6 / (np.asarray(sphericity, float) * np.asarray(particle_density, float) * d32(distribution)))
 
 
 def pan_share(distribution: SizeDistribution) -> NDArray[np.float64]:

@@ -1,0 +1,171 @@
+"""The command line: parse, call, print."""
+
+import sys
+from collections.abc import Callable
+from functools import wraps
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+import click
+
+from psdflow import __version__
+from psdflow.errors import InputError
+
+if TYPE_CHECKING:
+    from psdflow.present.text import Subject
+    from psdflow.reports import Report
+
+
+def _plainly(command: Callable[..., None]) -> Callable[..., None]:
+    """Print an InputError as its one line and exit 2."""
+
+    @wraps(command)
+    def run(*args: Any, **kwargs: Any) -> None:
+        try:
+            command(*args, **kwargs)
+        except InputError as error:
+            click.echo(f"psdflow: {error}", err=True)
+            sys.exit(2)
+
+    return run
+
+
+def _reading_options(command: Callable[..., None]) -> Callable[..., None]:
+    """The options that say how a report is to be read where it can't be recognised."""
+    for option in (
+        click.option("--columns", help="Which column is what, e.g. size=A,share=C or size='sieve',under=3."),
+        click.option("--kind", type=click.Choice(["sieve", "laser"]), help="How the sizes were measured."),
+        click.option("--basis", type=click.Choice(["mass", "volume", "number", "area"]), help="What was counted."),
+        click.option("--decimal", type=click.Choice([".", ","]), help="Decimal sign of the numbers."),
+        click.option("--sample", help="Read only the sample of this name."),
+        click.option("--size-unit", type=click.Choice(["um", "mm", "nm", "m", "in"]), help="Unit of the sizes."),
+    ):
+        command = option(command)
+    return command
+
+
+@click.group(context_settings={"help_option_names": ["-h", "--help"]})
+@click.version_option(__version__)
+def main() -> None:
+    """From a size report to fluidization behaviour: group, velocities, cohesion risk, carryover."""
+
+
+@main.command()
+@click.argument("files", nargs=-1, required=True, type=click.Path(path_type=Path))
+@_reading_options
+@click.option("--out", type=click.Path(path_type=Path), help="Folder for the canonical tables.")
+@_plainly
+def read(files: tuple[Path, ...], out: Path | None, **how: str | None) -> None:
+    """What is understood from size reports."""
+    from rich.console import Console
+
+    from psdflow.present.reading import understood
+    from psdflow.present.sheet import safe_name
+    from psdflow.reports.canonical import write_canonical
+
+    console = Console(highlight=False)
+    for report in _reports(files, how):
+        console.print(understood(report))
+        if out is not None:
+            write_canonical(report, out / f"{safe_name(report.lot)}.csv")
+
+
+@main.command()
+@click.argument("files", nargs=-1, required=True, type=click.Path(path_type=Path))
+@click.option("--material", required=True, type=click.Path(path_type=Path), help="What the powder is (YAML).")
+@click.option("--duty", required=True, type=click.Path(path_type=Path), help="Where it is fluidized (YAML).")
+@_reading_options
+@click.option("--below", multiple=True, metavar="SIZE", help='Also the share below this size, e.g. "30 um".')
+@click.option("--out", type=click.Path(path_type=Path), help="Folder for the sheets and figures.")
+@click.option("--json", "json_to", metavar="FILE|-", help="Everything as JSON, to a file or to the terminal.")
+@click.option("--full", is_flag=True, help="The whole page of every lot, not only the overview.")
+@click.option("--draws", default=None, type=click.IntRange(0, 100_000), help="Draws behind the intervals; 0 for none.")
+@click.option("--seed", default=None, type=click.IntRange(0), help="Seed of the draws.")
+@_plainly
+def assess(
+    files: tuple[Path, ...],
+    material: Path,
+    duty: Path,
+    below: tuple[str, ...],
+    out: Path | None,
+    json_to: str | None,
+    full: bool,
+    draws: int | None,
+    seed: int | None,
+    **how: str | None,
+) -> None:
+    """Predict how the lots in FILES will fluidize, cake, blow over and be lost."""
+    from psdflow.assess import assess as predict
+    from psdflow.duty import Duty
+    from psdflow.material import Material
+    from psdflow.present.text import Subject
+    from psdflow.uncertainty import DEFAULT_DRAWS, DEFAULT_SEED
+    from psdflow.units import read_quantity
+
+    powder, unit = Material.load(material), Duty.load(duty)
+    sizes = tuple(read_quantity(text, "length").value for text in below)
+    subjects = []
+    for report in _reports(files, how):
+        try:
+            assessment = predict(
+                report.distribution,
+                powder,
+                unit,
+                lots=(report.lot,),
+                below=sizes,
+                draws=DEFAULT_DRAWS if draws is None else draws,
+                seed=DEFAULT_SEED if seed is None else seed,
+            )
+        except InputError as error:
+            raise InputError(f"{report.source}: {error}") from None
+        subjects.append(Subject(assessment, 0, report.lot, report.source, report.warnings))
+    _present(subjects, out, json_to, full)
+
+
+def _present(subjects: "list[Subject]", out: Path | None, json_to: str | None, full: bool) -> None:
+    from psdflow.present import sheet
+
+    if json_to == "-":
+        click.echo(sheet.json_text(subjects), nl=False)
+    else:
+        from rich.console import Console
+
+        from psdflow.present.text import write
+
+        write(Console(highlight=False), subjects, full=full)
+        if json_to is not None:
+            sheet.write_json(subjects, Path(json_to))
+    if out is not None:
+        from psdflow.present.figures import distribution_figure, save, velocity_figure
+
+        for subject in subjects:
+            stem = sheet.safe_name(subject.name)
+            sheet.write_csv(subject, out / f"{stem}-sheet.csv")
+            for name, draw in (("distribution", distribution_figure), ("velocities", velocity_figure)):
+                for suffix in ("svg", "png"):
+                    save(draw(subject.assessment, subject.lot), out / f"{stem}-{name}.{suffix}")
+        sheet.write_json(subjects, out / "assessment.json")
+        click.echo(f"sheets and figures written to {out}", err=True)
+
+
+def _reports(files: tuple[Path, ...], how: dict[str, str | None]) -> "list[Report]":
+    from psdflow.reports import read as read_report
+
+    given = {key: value for key, value in how.items() if value is not None}
+    return [report for file in files for report in read_report(file, **given)]
+
+
+@main.command()
+@click.argument("quantity", required=False)
+@_plainly
+def methods(quantity: str | None) -> None:
+    """The published methods with sources and ranges; all, or those that give one QUANTITY such as u_mf."""
+    from rich.console import Console
+
+    from psdflow.present.catalogue import catalogue_page
+
+    Console(highlight=False).print(catalogue_page(quantity))
+
+
+if __name__ == "__main__":
+    main()

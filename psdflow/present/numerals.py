@@ -1,0 +1,55 @@
+"""Numbers and units as people read them: three significant digits, µm, kg/h, per cent."""
+
+from typing import NamedTuple
+
+# Sheet unit -> unit on screens and its factor; rates and concentrations by key, as kg/s serves both bed and loss.
+_FRIENDLY: dict[str, tuple[str, float]] = {
+    "m": ("µm", 1e6),
+    "kg/s": ("kg/h", 3600.0),
+    "Pa.s": ("µPa·s", 1e6),
+    "m^2/kg": ("m²/kg", 1.0),
+    "kg/m^3": ("kg/m³", 1.0),
+    "kg/m^2/s": ("kg/m²/s", 1.0),
+    "1": ("", 1.0),
+}
+_IN_METRES = ("tdh", "expanded_height", "bubble_diameter", "height_spout_max")
+_PER_CENT = ("share", "below_", "probability", "cyclone_efficiency")
+
+
+class Friendly(NamedTuple):
+    """A unit for people and the factor from SI."""
+
+    unit: str
+    factor: float
+
+
+def friendly(key: str, unit: str) -> Friendly:
+    """The unit in which people read sheet key ``key`` of SI unit ``unit``."""
+    if unit == "m" and key in _IN_METRES:
+        return Friendly("m", 1.0)
+    if unit == "1" and any(word in key for word in _PER_CENT):
+        return Friendly("%", 100.0)
+    if key == "loss_concentration":
+        return Friendly("g/m³", 1000.0)
+    return Friendly(*_FRIENDLY.get(unit, (unit, 1.0)))
+
+
+def digits(value: float | None, significant: int = 3) -> str:
+    """A number at ``significant`` digits, without exponent where it stays readable; a dash for None."""
+    if value is None:
+        return "–"
+    if value == 0:
+        return "0"
+    if not 1e-4 <= abs(value) < 1e6:
+        return f"{value:.{significant - 1}e}"
+    text = f"{value:.{significant}g}"
+    if "e" in text:
+        text = f"{float(text):.0f}"
+    return text
+
+
+def span_of(low: float | None, high: float | None, factor: float) -> str:
+    """An interval at two significant digits, empty where there is none."""
+    if low is None or high is None:
+        return ""
+    return f"{digits(low * factor, 2)} to {digits(high * factor, 2)}"
