@@ -5,6 +5,8 @@ Variables the ranges use: ``diameter`` (of the kind the method takes), ``spheric
 ``fluid_density``, ``pressure`` (absolute), ``bed_diameter``, ``minimum_fluidization_velocity``,
 ``excess_velocity`` (velocity less U_mf). A quantity that is not a sheet key (``u_t``, ``u_se``, ``u_cf``,
 ``slip_correction``) feeds one that is.
+
+``checked`` speaks of the coefficients; journal, volume and page were written from memory throughout.
 """
 
 from psdflow.methods import Method

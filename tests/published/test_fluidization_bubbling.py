@@ -92,7 +92,8 @@ def test_mori_wen_in_cgs():
 
 
 def test_babu_in_cgs():
-    """Babu et al. 1978 (from memory): H/H_mf - 1 = 1.957 (U-U_mf)^0.738 d^1.006 ρ_p^0.376/(ρ_g^0.126 U_mf^0.937), cgs."""
+    """Babu et al. 1978 (from memory): H/H_mf - 1 = 1.957 (U-U_mf)^0.738 d^1.006 ρ_p^0.376/(ρ_g^0.126 U_mf^0.937)."""
+    # in cm, g, s
     expected = 1.957 * 25.0**0.738 * 0.03**1.006 * 2.6**0.376 / (1.2e-3**0.126 * 5.0**0.937)
     got = bed_expansion_babu(
         velocity=0.3,

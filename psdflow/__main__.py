@@ -1,0 +1,5 @@
+"""``python -m psdflow``."""
+
+from psdflow.cli import main
+
+main()
