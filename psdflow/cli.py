@@ -142,8 +142,9 @@ def _present(subjects: "list[Subject]", out: Path | None, json_to: str | None, f
             stem = sheet.safe_name(subject.name)
             sheet.write_csv(subject, out / f"{stem}-sheet.csv")
             for name, draw in (("distribution", distribution_figure), ("velocities", velocity_figure)):
+                figure = draw(subject.assessment, subject.lot)
                 for suffix in ("svg", "png"):
-                    save(draw(subject.assessment, subject.lot), out / f"{stem}-{name}.{suffix}")
+                    save(figure, out / f"{stem}-{name}.{suffix}")
         sheet.write_json(subjects, out / "assessment.json")
         click.echo(f"sheets and figures written to {out}", err=True)
 

@@ -28,7 +28,8 @@ def _fluidizes(rows: dict[str, Row]) -> str:
         return f"In this liquid: {state}."
     share = rows[f"probability_{str(group.value).lower()}"].value
     sure = f" ({float(share or 0):.0%} of draws and boundary sets)"
-    return f"Group {group.value}{sure}, {GROUP_MEANS[str(group.value)]}. {str(state)[0].upper()}{state[1:]}."
+    state = f"If it fluidizes at all: {state}" if group.value == "C" else f"{state[0].upper()}{state[1:]}"
+    return f"Group {group.value}{sure}, {GROUP_MEANS[str(group.value)]}. {state}."
 
 
 def _cohesion(rows: dict[str, Row]) -> str:

@@ -2,6 +2,7 @@
 
 import re
 from bisect import bisect_left
+from functools import lru_cache
 from typing import Literal, NamedTuple
 
 from psdflow.reports.numerals import LENGTHS, UNITS, Cell, Decimal, numeral, plain
@@ -77,6 +78,7 @@ _MESH = re.compile(r"(\d{1,3}) ?(?:mesh|#)|mesh ?(\d{1,3})")
 _INCH = re.compile(r"(\d{1,2}|\d/\d{1,2}|\d \d/\d{1,2}) ?(?:in\.?|inch|\"|zoll|'')")
 
 
+@lru_cache(maxsize=8192, typed=True)
 def size_of(cell: Cell, decimal: Decimal) -> Size | None:
     """Read a size cell, or None if it says no size."""
     number = numeral(cell, decimal)

@@ -1,6 +1,6 @@
 """Sizes and one quantity -> class edges and fractions. Shared by sieve and laser reports."""
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 from numpy import float64
@@ -260,3 +260,41 @@ def _full_scale(
     if abs(reached / quantity.scale - 1) > TOTAL_WARN:
         return reached, [f"{name} goes up to {top / quantity.scale * 100:.2f} %; scaled to 100 %"]
     return reached, []
+
+
+def from_middles(sizes: Sizes, quantity: Quantity) -> Classes:
+    """Edges midway (geometric) between class middles; the outer two mirror their neighbours."""
+    middles = np.array([c.low or 0.0 for c in sizes.cells])
+    if any(c.kind != "edge" for c in sizes.cells) or np.any(middles <= 0) or middles.size < 3:
+        raise InputError(f"{quantity.table.grid.name}: class middles must be three or more plain sizes over 0")
+    inner = np.sqrt(middles[1:] * middles[:-1])
+    edges = np.concatenate([[middles[0] ** 2 / inner[0]], inner, [middles[-1] ** 2 / inner[-1]]])
+    cells = [Size("class", float(a), float(b), "m") for a, b in zip(edges, edges[1:], strict=False)]
+    classes = in_class(replace(sizes, cells=cells), quantity, "upper")
+    steps = np.diff(np.log(middles))
+    classes.warnings.append(
+        "class edges were set midway (geometric mean) between class middles"
+        + ("; the middles are unevenly spaced, so a class may be missing" if steps.max() > 1.3 * np.median(steps) else "")
+    )
+    return classes
+
+
+def averaged(readings: list[Classes], place: str) -> tuple[Classes, NDArray[float64] | None]:
+    """The mean of repeated readings, and all of them, shape (readings, n + 2); one reading has no repeats.
+
+    Raises
+    ------
+    InputError
+        If the readings don't have the same classes.
+    """
+    first = readings[0]
+    if len(readings) == 1:
+        return first, None
+    for other in readings[1:]:
+        if other.edges.shape != first.edges.shape or not np.allclose(other.edges, first.edges, rtol=1e-9):
+            raise InputError(f"{place}: repeated readings of a sample have other classes; the same are expected")
+    repeats = np.stack([reading.all for reading in readings])
+    mean = repeats.mean(axis=0)
+    mean /= mean.sum()
+    warnings = list(dict.fromkeys(w for reading in readings for w in reading.warnings))
+    return replace(first, below=float(mean[0]), shares=mean[1:-1], above=float(mean[-1]), warnings=warnings), repeats

@@ -24,6 +24,7 @@ class SizeColumns:
     lower: int | None = None
     upper: int | None = None
     mid: int | None = None
+    span: range = range(0)  # the columns of the file these sizes rule; empty: all
 
     @property
     def all(self) -> list[int]:
@@ -84,14 +85,18 @@ def read_sizes(table: Table, columns: SizeColumns, decimal: Decimal, size_unit: 
     raw: list[tuple[int, Size]] = []
     footers: list[tuple[int, str]] = []
     for i, row in enumerate(table.rows):
+        own = row[columns.span.start : columns.span.stop] if columns.span else row
         size = _row_size(row, columns, decimal)
+        if size is None and all(_blank(row[c]) for c in columns.all) and (label := _label(own)):
+            named = size_of(label, decimal)  # "Pan" in a column beside the apertures
+            size = named if named is not None and named.kind == "below" and named.high is None else None
         if size is not None:
             raw.append((i, size))
-        elif all(row[c] == "" for c in columns.all) and not _label(row):
-            if any(cell != "" for cell in row):
+        elif all(row[c] == "" for c in columns.all) and not _label(own):
+            if any(cell != "" for cell in own):
                 footers.append((i, "unlabelled"))
         else:
-            footers.append((i, is_footer(_label(row)) or "unknown"))
+            footers.append((i, is_footer(_label(own)) or "unknown"))
     if len(raw) < 2:
         _fail_few(table, columns, len(raw))
     unit, notes = _unit(table, columns, [size for _, size in raw], size_unit)
@@ -109,6 +114,10 @@ def read_sizes(table: Table, columns: SizeColumns, decimal: Decimal, size_unit: 
     edge = "lower" if columns.lower is not None and not columns.pair else edge
     edge = "upper" if columns.upper is not None and not columns.pair else edge
     return Sizes(table, columns, [s for _, s in ordered], [i for i, _ in ordered], footers, edge, unit, notes)
+
+
+def _blank(cell: Cell) -> bool:
+    return isinstance(cell, str) and plain(cell) in ("", "-", "--")
 
 
 def _label(row: list[Cell]) -> str:
@@ -264,7 +273,7 @@ def _ordered(table: Table, columns: SizeColumns, sizes: list[tuple[int, Size]]) 
     positions = [_position(s) for _, s in inner]
     rising = positions[-1] > positions[0]
     for (i, _), before, here in zip(inner[1:], positions, positions[1:], strict=False):
-        if np.isclose(before, here, rtol=1e-12, atol=0):
+        if abs(here - before) <= 1e-12 * abs(before):
             raise InputError(f"{table.where(i, column)}: size {shown(table.rows[i][column])} stands twice; each size once is expected")
         if (here > before) != rising:
             raise InputError(

@@ -1,21 +1,16 @@
-"""A laser-diffraction sample -> classes: volume (area, number) in classes or cumulative; repeats averaged."""
-
-from dataclasses import replace
+"""A laser-diffraction sample -> classes: volume (area, number) in classes or cumulative."""
 
 import numpy as np
-from numpy import float64
-from numpy.typing import NDArray
 
 from psdflow.errors import InputError
-from psdflow.reports.apertures import Size
-from psdflow.reports.classes import Classes, cumulative, in_class
+from psdflow.reports.classes import Classes, cumulative, from_middles, in_class
 from psdflow.reports.quantities import Quantity
 from psdflow.reports.recognise import Sample
 from psdflow.reports.sieve import compare, stated_total
 
 
-def laser_classes(sample: Sample) -> tuple[Classes, Quantity, NDArray[float64] | None]:
-    """Classes of a laser sample, and the shares of its repeated readings if there are several.
+def laser_classes(sample: Sample) -> tuple[Classes, Quantity]:
+    """Classes of one reading of a laser sample.
 
     A single size beside a share in class is the class's upper edge, unless the header says lower or
     middle, or a cumulative column beside it shows that it is the lower one.
@@ -23,29 +18,8 @@ def laser_classes(sample: Sample) -> tuple[Classes, Quantity, NDArray[float64] |
     Raises
     ------
     InputError
-        If columns contradict each other, or repeats don't have the same classes.
+        If columns contradict each other.
     """
-    classes, quantity = _reading(sample)
-    if not sample.repeats:
-        return classes, quantity, None
-    others = []
-    for reading in sample.repeats:
-        other, _ = _reading(reading)
-        if other.edges.shape != classes.edges.shape or not np.allclose(other.edges, classes.edges, rtol=1e-9):
-            raise InputError(f"{quantity.table.grid.name}: repeated readings of {sample.name or 'the sample'} have other classes; the same are expected")
-        others.append(other)
-        classes.warnings += [w for w in other.warnings if w not in classes.warnings]
-    repeats = np.stack([classes.all, *(o.all for o in others)])
-    mean = repeats.mean(axis=0)
-    mean /= mean.sum()
-    return (
-        replace(classes, below=float(mean[0]), shares=mean[1:-1], above=float(mean[-1])),
-        quantity,
-        repeats,
-    )
-
-
-def _reading(sample: Sample) -> tuple[Classes, Quantity]:
     best = next(role for role in ("share", "mass", "under", "over") if role in sample.quantities)
     quantity = sample.quantities[best]
     others = [q for role, q in sample.quantities.items() if role != best and role in ("under", "over")]
@@ -62,7 +36,7 @@ def _reading(sample: Sample) -> tuple[Classes, Quantity]:
         return classes, quantity
     edge, notes = _edge(sample, quantity, others)
     if edge == "mid":
-        classes = _from_middles(sample, quantity)
+        classes = from_middles(sample.sizes, quantity)
     else:
         classes = in_class(sample.sizes, quantity, edge)
         for other in others:
@@ -95,20 +69,3 @@ def _joined_pairs(sample: Sample, quantity: Quantity, classes: Classes) -> None:
     if sample.sizes.columns.pair:
         edge = "upper" if quantity.role == "under" else "lower"
         classes.warnings.append(f"{quantity.table.column_name(quantity.column)} was taken to belong to the {edge} edge of each class")
-
-
-def _from_middles(sample: Sample, quantity: Quantity) -> Classes:
-    """Edges midway (geometric) between class middles; the outer two mirror their neighbours."""
-    middles = np.array([c.low or 0.0 for c in sample.sizes.cells])
-    if any(c.kind != "edge" for c in sample.sizes.cells) or np.any(middles <= 0) or middles.size < 3:
-        raise InputError(f"{quantity.table.grid.name}: class middles must be three or more plain sizes over 0")
-    inner = np.sqrt(middles[1:] * middles[:-1])
-    edges = np.concatenate([[middles[0] ** 2 / inner[0]], inner, [middles[-1] ** 2 / inner[-1]]])
-    cells = [Size("class", float(a), float(b), "m") for a, b in zip(edges, edges[1:], strict=False)]
-    classes = in_class(replace(sample.sizes, cells=cells), quantity, "upper")
-    steps = np.diff(np.log(middles))
-    classes.warnings.append(
-        "class edges were set midway (geometric mean) between class middles"
-        + ("; the middles are unevenly spaced, so a class may be missing" if steps.max() > 1.3 * np.median(steps) else "")
-    )
-    return classes

@@ -2,6 +2,7 @@
 
 import math
 import re
+from functools import lru_cache
 from collections.abc import Iterable, Sequence
 from typing import Literal, NamedTuple
 
@@ -97,6 +98,7 @@ _FULL = {
 }
 
 
+@lru_cache(maxsize=8192, typed=True)
 def numeral(cell: Cell, decimal: Decimal) -> Numeral | None:
     """The number in a cell, or None if the cell is not a number with at most a unit behind it."""
     if isinstance(cell, float):
@@ -146,7 +148,10 @@ def decimal_of(rows: Sequence[Sequence[Cell]], where: str) -> Decimal:
     """
     votes: dict[str, str] = {}
     unclear: dict[str, str] = {}
+    commas = any("," in cell for row in rows for cell in row if isinstance(cell, str))
     for row in rows:
+        if votes and not commas:
+            break  # without any comma there is nothing to weigh
         numbers = [c for c in row if not isinstance(c, str) or (c[-1:] and _NUMBERISH.fullmatch(c))]
         if len(numbers) < 2:
             continue

@@ -78,9 +78,11 @@ def read_quantity(sizes: Sizes, column: int, decimal: Decimal, role: str | None 
     if found is None or found[0] is None:
         return None
     result = Quantity(sizes.table, column, found[0], found[1], unit, [], [])
+    if found[0] == "mass" and not unit and role is None and head.role == "retained":
+        result.notes.append(f"{sizes.table.column_name(column)} has no unit and was read as masses")
     result.values = _values(result, sizes, cells, numbers)
     if result.role in ("under", "over", "share"):
-        _check_scale(result, head)
+        _check_scale(result)
     return result
 
 
@@ -93,21 +95,23 @@ def _reading(head: Heading, numbers: list[Numeral | None], unit: str) -> tuple[s
     if in_mass and head.role in ("", "share", "retained"):
         return "mass", 0.0
     scale = 0.0 if in_mass else _scale(numbers, unit)
+    # Fine classes can each hold under 1 %: what they add up to tells a percentage from a fraction.
+    share_scale = 100.0 if scale == 1.0 and unit != "1" and values.sum() > 10 else scale
     rising, falling = bool(np.all(np.diff(values) >= 0)), bool(np.all(np.diff(values) <= 0))
     total = float(values.sum())
     if head.role in ("under", "over", "share"):
-        return head.role, scale
+        return head.role, share_scale if head.role == "share" else scale
     if head.role == "cumulative":
         # Which way it runs: most steps decide, so that one wrong number is found as a fall later.
         return ("under" if values[-1] >= values[0] else "over"), scale
-    defects = {"share": abs(total / scale - 1)} if scale else {}
+    defects = {"share": abs(total / share_scale - 1)} if scale else {}
     if scale and rising and values[-1] > values[0] and head.role != "retained":
         defects["under"] = abs(float(values[-1]) / scale - 1)
     if scale and falling and values[0] > values[-1]:
         defects["over"] = abs(float(values[0]) / scale - 1)
     best = min(defects, key=lambda k: defects[k], default="")
     if best and defects[best] <= TOTAL_REFUSE:
-        return best, scale
+        return best, share_scale if best == "share" else scale
     if head.role == "retained":
         if unit in ("%", "1"):
             return ("over" if falling and total > scale else "share"), scale
@@ -167,7 +171,7 @@ def _no_number(quantity: Quantity, where: str, word: str, cell: str | float) -> 
     raise InputError(f"{where}: {word} is {shown(cell)}; {reason}. Correct it, or mark the row as a comment with #.")
 
 
-def _check_scale(quantity: Quantity, head: Heading) -> None:
+def _check_scale(quantity: Quantity) -> None:
     """Refuse percentages that are fractions and the reverse, where the header (or cells) say which."""
     known = [v for v in quantity.values if v is not None]
     everything = sum(known) if quantity.role == "share" else max(known, default=0.0)
@@ -184,4 +188,3 @@ def _check_scale(quantity: Quantity, head: Heading) -> None:
         )
     if quantity.unit == "" and quantity.scale == 1.0 and quantity.role == "share" and everything < 0.9 and len(known) > 1:
         raise InputError(f"{where} adds up to {everything:.4g}; 100 (percent) or 1 (fractions) is expected")
-    del head

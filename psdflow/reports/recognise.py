@@ -9,7 +9,7 @@ import numpy as np
 from psdflow.errors import InputError, shown
 from psdflow.reports.cells import letters
 from psdflow.reports.edges import SizeColumns, Sizes, looks_like_sizes, read_sizes
-from psdflow.reports.numerals import LENGTHS, Decimal, numeral, plain
+from psdflow.reports.numerals import LENGTHS, Decimal, Numeral, numeral, plain
 from psdflow.reports.quantities import Quantity, read_quantity
 from psdflow.reports.report import Options
 from psdflow.reports.tables import Table
@@ -46,17 +46,16 @@ def recognise(table: Table, options: Options, decimal: Decimal) -> list[Sample]:
         return _grouped(chosen, found, said=True)
     units = _size_columns(table, decimal, options)
     samples: list[Sample] = []
-    for k, (columns_of_size, first, last) in enumerate(units):
+    taken = {c for unit in units for c in unit.all}
+    for columns_of_size in units:
         chosen = read_sizes(table, columns_of_size, decimal, options.size_unit)
-        taken = {c for unit, *_ in units for c in unit.all}
         quantities, unused = [], []
-        start = 0 if k == 0 else first
-        for j in range(start, last):
+        for j in columns_of_size.span:
             if j in taken or _is_blank(table, j):
                 continue
             head = heading(table.headers[j])
-            if head.size and not _name_only(table, j):
-                continue
+            if head.size and head.unit:
+                continue  # another size, such as a class middle
             if head.unused and not head.role:
                 unused.append(j)
                 continue
@@ -85,12 +84,6 @@ def _mostly_numbers(table: Table, column: int, decimal: Decimal) -> bool:
     return sum(numeral(c, decimal) is not None for c in cells) >= 0.6 * len(cells)
 
 
-def _name_only(table: Table, column: int) -> bool:
-    """A header such as "Fraction 2" or "Sieve A" that is a sample's name rather than a size."""
-    head = heading(table.headers[column])
-    return not head.unit and not head.edge and bool(re.search(r"\d|(?<![a-z])[a-h](?![a-z])", head.text))
-
-
 def _undecided(table: Table, why: str) -> NoReturn:
     seen = []
     for j in range(len(table.headers)):
@@ -109,8 +102,8 @@ def _undecided(table: Table, why: str) -> NoReturn:
     )
 
 
-def _size_columns(table: Table, decimal: Decimal, options: Options) -> list[tuple[SizeColumns, int, int]]:
-    """Size columns with the range of columns each rules: one set, or several side by side."""
+def _size_columns(table: Table, decimal: Decimal, options: Options) -> list[SizeColumns]:
+    """Size columns, each with the range of columns it rules: one set, or several side by side."""
     width = len(table.headers)
     named: list[int] = []
     unnamed: list[int] = []
@@ -138,7 +131,12 @@ def _size_columns(table: Table, decimal: Decimal, options: Options) -> list[tupl
         else:
             groups.append([j])
     starts = [g[0] for g in groups] + [width]
-    return [(_one_set(table, group, decimal), starts[k], starts[k + 1]) for k, group in enumerate(groups)]
+    sets = []
+    for k, group in enumerate(groups):
+        columns = _one_set(table, group, decimal)
+        columns.span = range(starts[k] if k else 0, starts[k + 1])
+        sets.append(columns)
+    return sets
 
 
 def _one_set(table: Table, columns: list[int], decimal: Decimal) -> SizeColumns:
@@ -168,7 +166,7 @@ def _one_set(table: Table, columns: list[int], decimal: Decimal) -> SizeColumns:
     _undecided(table, "several columns may be the sizes")
 
 
-def _joining(columns: list[int], numbers: dict[int, list[object]]) -> tuple[int, int] | None:
+def _joining(columns: list[int], numbers: dict[int, list[Numeral | None]]) -> tuple[int, int] | None:
     """Two columns where each class ends at the next one's beginning, whatever their headers."""
     for a, b in zip(columns, columns[1:], strict=False):
         one = np.array([getattr(n, "value", np.nan) for n in numbers[a]])
@@ -186,7 +184,7 @@ def _joining(columns: list[int], numbers: dict[int, list[object]]) -> tuple[int,
     return None
 
 
-def _proportional(one: list[object], two: list[object]) -> bool:
+def _proportional(one: list[Numeral | None], two: list[Numeral | None]) -> bool:
     a = np.array([getattr(n, "value", np.nan) for n in one])
     b = np.array([getattr(n, "value", np.nan) for n in two])
     known = np.isfinite(a) & np.isfinite(b) & (a > 0) & (b > 0)

@@ -4,7 +4,7 @@ import numpy as np
 
 from psdflow.errors import InputError
 from psdflow.reports.apertures import nominal
-from psdflow.reports.classes import Classes, cumulative, in_class
+from psdflow.reports.classes import Classes, cumulative, from_middles, in_class
 from psdflow.reports.quantities import TOTAL_REFUSE, TOTAL_WARN, Quantity
 from psdflow.reports.recognise import Sample
 from psdflow.reports.report import Options
@@ -25,7 +25,7 @@ def sieve_classes(sample: Sample, options: Options, charge: float | None) -> tup
     """
     best = next(role for role in ("mass", "share", "over", "under") if role in sample.quantities)
     quantity = sample.quantities[best]
-    edge = "upper" if sample.sizes.edge == "upper" and best == "share" else "lower"
+    edge = sample.sizes.edge if sample.sizes.edge in ("upper", "mid") and best in ("mass", "share") else "lower"
     classes = _one(sample, quantity, edge, charge)
     if best == "mass":
         classes.warnings += _loss(sample, quantity, classes.total, options, charge)
@@ -37,7 +37,7 @@ def sieve_classes(sample: Sample, options: Options, charge: float | None) -> tup
     for role, other in sample.quantities.items():
         if role not in (best, "gross", "tare"):
             compare(classes, _one(sample, other, edge, charge), quantity, other)
-    strange = [f"{size * 1e6:.4g}" for size in classes.edges if nominal(size) is None]
+    strange = [f"{size * 1e6:.4g}" for size in classes.edges if edge != "mid" and nominal(size) is None]
     if strange:
         classes.warnings.append(f"{', '.join(strange[:8])} µm: no nominal aperture of ISO 565 or ASTM E11 within 2.5 %; kept as given")
     return classes, quantity
@@ -46,6 +46,8 @@ def sieve_classes(sample: Sample, options: Options, charge: float | None) -> tup
 def _one(sample: Sample, quantity: Quantity, edge: str, charge: float | None) -> Classes:
     if quantity.role in ("under", "over"):
         return cumulative(sample.sizes, quantity, charge)
+    if edge == "mid":
+        return from_middles(sample.sizes, quantity)
     return in_class(sample.sizes, quantity, edge)
 
 

@@ -3,6 +3,7 @@
 import re
 from dataclasses import dataclass, field
 
+from psdflow.errors import InputError
 from psdflow.reports.apertures import ASTM_NUMBERS, size_of
 from psdflow.reports.cells import Grid, letters
 from psdflow.reports.numerals import UNITS, Cell, Decimal, numeral, plain
@@ -51,6 +52,7 @@ class Layout:
     fields: dict[str, str]
     titles: list[str]
     unclaimed: list[int]
+    kinds: list[str]
 
 
 def find_tables(grid: Grid, decimal: Decimal) -> Layout:
@@ -70,7 +72,7 @@ def find_tables(grid: Grid, decimal: Decimal) -> Layout:
             i += 1
     fields, titles = _fields(grid, kinds, used, tables)
     unclaimed = [r for r, kind in enumerate(kinds) if kind == "data" and r not in used]
-    return Layout(tables, fields, titles, unclaimed)
+    return Layout(tables, fields, titles, unclaimed, kinds)
 
 
 def _row_kinds(grid: Grid, decimal: Decimal) -> list[str]:
@@ -83,7 +85,7 @@ def _row_kinds(grid: Grid, decimal: Decimal) -> list[str]:
         first = filled[0] if filled else ""
         if not filled:
             kinds.append("blank")
-        elif isinstance(first, str) and first.startswith("#") and not (hashes > plain_starts and _hash_number(row)):
+        elif isinstance(first, str) and first[:1] == "#" and first != "#" and not (hashes > plain_starts and _hash_number(row)):
             kinds.append("comment")
         else:
             kinds.append(_kind(filled, decimal))
@@ -154,13 +156,37 @@ def _standing_table(grid: Grid, start: int, kinds: list[str], used: set[int], de
     ):
         first -= 1
     body = [i for i in range(first, end) if kinds[i] in ("data", "single")]
+    if len(body) > 2 and _numbered_header(grid, body, decimal):
+        kinds[body[0]] = "text"  # "size;1;2;3": samples named by numbers
+        first, body = body[1], body[1:]
     width = max(len(grid.rows[i]) for i in body)
     header_rows = _header_rows(grid, first, kinds, used, decimal)
     headers = _join_headers(grid, header_rows, width)
     used.update(header_rows)
     used.update(range(first, end))
+    _no_overhang(grid, headers, body, decimal)
     rows = [list(grid.rows[i]) + [""] * (width - len(grid.rows[i])) for i in body]
     return Table(grid, headers, rows, body), end
+
+
+def _numbered_header(grid: Grid, body: list[int], decimal: Decimal) -> bool:
+    label = next((c for c in grid.rows[body[0]] if c != ""), "")
+    is_label = isinstance(label, str) and size_of(label, decimal) is None and heading(label).size
+    return is_label and _starts_with_size(grid, body[1], decimal)
+
+
+def _no_overhang(grid: Grid, headers: list[str], body: list[int], decimal: Decimal) -> None:
+    """Refuse rows with more numbers than headers in comma-separated text: decimal commas were split there."""
+    headed = max((j + 1 for j, header in enumerate(headers) if header), default=0)
+    if grid.separator != "," or not headed:
+        return
+    for i in body:
+        over = [cell for cell in grid.rows[i][headed:] if numeral(cell, decimal)]
+        if over:
+            raise InputError(
+                f"{grid.where(i)}: more numbers than the {headed} columns of the header; if they have decimal commas, "
+                "separate the columns with semicolons or tabs"
+            )
 
 
 def _starts_with_size(grid: Grid, row: int, decimal: Decimal) -> bool:
@@ -197,7 +223,8 @@ def _may_stack(upper: list[Cell], filled: list[int], lower: list[Cell]) -> bool:
         return False
     lower_filled = [plain(str(c)) for c in lower if c != ""]
     units = all(c.strip("[]() ") in UNITS for c in lower_filled)
-    gap = bool(lower) and lower[0] == "" and upper[0] != ""
+    repeated = len(filled) > 1 and len(set(lower_filled)) * len(filled) == len(lower_filled)
+    gap = repeated or bool(lower) and lower[0] == "" and upper[0] != ""
     return units or gap or filled[0] > 0 or len(lower_filled) < len(filled)
 
 
@@ -265,6 +292,9 @@ def _fields(grid: Grid, kinds: list[str], used: set[int], tables: list[Table]) -
         filled = [(j, _text(cell)) for j, cell in enumerate(row) if cell != ""]
         filled = [(j, text) for k, (j, text) in enumerate(filled) if not k or text != filled[k - 1][1]]
         if kinds[i] == "comment":
+            if ":" not in filled[0][1]:
+                titles.append(" ".join(text for _, text in filled).lstrip("# ")[:200])
+                continue
             filled[0] = (filled[0][0], filled[0][1].lstrip("# "))
         key, colon, value = filled[0][1].partition(":")
         key = key.strip()
@@ -302,6 +332,21 @@ def _name_columns(tables: list[Table], row: int, key: str, named: list[tuple[int
 
 def _text(cell: Cell) -> str:
     return f"{cell:.10g}" if isinstance(cell, float) else " ".join(cell.split())
+
+
+def stray_rows(table: Table, layout: Layout) -> list[int]:
+    """Rows just under a standing table, after a gap, that hold a word nobody knows and one number."""
+    if table.across:
+        return []
+    last = table.place[-1]
+    found = []
+    for i in range(last + 1, min(last + 4, len(table.grid.rows))):
+        filled = [c for c in table.grid.rows[i] if c != ""]
+        label = plain(str(filled[0])).strip(" :") if filled else ""
+        known = any(p.search(label) for p in (LOT, SAMPLE, NAMES)) or is_footer(label) or str(filled[:1]).count(":")
+        if layout.kinds[i] == "single" and len(filled) == 2 and not known:
+            found.append(i)
+    return found
 
 
 def is_footer(label: str) -> str:

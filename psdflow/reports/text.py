@@ -8,7 +8,7 @@ from psdflow.reports.cells import MAX_CELLS, Grid
 from psdflow.reports.numerals import Cell
 
 _SEPARATORS = ("\t", ";", "|", ",")
-_LINES_LOOKED_AT = 400
+_LINES_LOOKED_AT = 80
 _CONTROL = re.compile(r"[\x00-\x08\x0e-\x1a\x1c-\x1f]")
 
 # A cell that is a size or a number: what is left after digits, signs and unit words are taken away is nothing.
@@ -75,7 +75,8 @@ def separator_of(lines: list[str]) -> str:
 
     Each candidate is judged by the lines it splits wholly into sizes and numbers.
     """
-    with_digits = [line for line in lines if _HAS_DIGIT.search(line)][:_LINES_LOOKED_AT]
+    with_digits = [line for line in lines if _HAS_DIGIT.search(line)]
+    with_digits = with_digits[:: len(with_digits) // _LINES_LOOKED_AT + 1]
     scores: dict[str, float] = {}
     for separator in _SEPARATORS:
         if any(separator in line for line in with_digits):
@@ -103,7 +104,14 @@ def _score(cells: list[str]) -> float:
 
 def _split(text: str, lines: list[str], separator: str) -> tuple[list[list[Cell]], list[int]]:
     if not separator:
-        return [list(_split_spaces(line)) for line in lines], list(range(1, len(lines) + 1))
+        spaced = [_split_spaces(line) for line in lines]
+        widths = [len(cells) for cells in spaced if len(cells) > 1]
+        usual = max(set(widths), key=widths.count) if widths else 0
+        for k, cells in enumerate(spaced):
+            # A header with single spaces: "Sieve (um) Retained (g)".
+            if len(cells) == 1 and len(words := re.sub(r" (?=[\[(])", "", cells[0]).split()) == usual:
+                spaced[k] = words
+        return [list(cells) for cells in spaced], list(range(1, len(lines) + 1))
     if '"' in text:
         try:
             return _split_quoted(lines, separator)

@@ -21,20 +21,35 @@ SIZE = _words(
     r"sieb\w*|masch\w*|korn\w*|partikel\w*|teilchen\w*|klassen?\w*|durchmesser|\w*grenzen?|grosse|groesse",
     r"ouvertures?|mailles?|tamis|tailles?|diametres?|classes?|bornes?",
     r"luz(?: de malla)?|mallas?|tamiz|tamices|aberturas?|tamanos?|diametros?|clases?",
-    r"astm.*|us sieve.*|u\.s\..*|x|d|xo|xu",
+    r"astm.*|us sieve.*|u\.s\..*",
 )
-UPPER = _words(
-    r"upper|top|to|max(?:imum)?|high(?:er)?|end|obere?r?|ober\w*|\w*obergrenze\w*|bis|superieure?s?|sup\.?|superior|hasta|jusqu'?a",
-    r"finer than|less than|smaller than|below|under(?:size)?|kleiner(?: als)?|unter|inferieure? a|menor que|xo|<",
+_SYMBOL = re.compile(r"(?:x|d|xo|xu|dp)(?= ?[,/(\[]|$)")
+# "To (µm)" and "Klasse bis [µm]" name an edge; "aperture to ISO 3310" and "taille de particule" don't.
+_TO = r"(?:^|(?:size|class|classe|clase|klasse|korngrosse|taille|tamano|grain) )(?:to|bis|hasta|jusqu'?a|a)(?= ?[\[(,/]|$)"
+_FROM = r"(?:^|(?:size|class|classe|clase|klasse|korngrosse|taille|tamano|grain) )(?:from|von|desde|de)(?= ?[\[(,/]|$)"
+UPPER = re.compile(
+    _words(
+        r"upper|max(?:imum)?|higher|obere?r?|ober\w*|\w*obergrenzen?|superieure?s?|sup\.?|superior|xo|passing|passant|pasante|durchgang",
+        r"finer than|less than|smaller than|below|under(?:size)?|kleiner(?: als)?|unter|inferieure? a|menor que",
+    ).pattern
+    + "|"
+    + _TO
+    + "|<"
 )
-LOWER = _words(
-    r"lower|bottom|from|min(?:imum)?|low|start|untere?r?|untergrenze\w*|\w*untergrenze\w*|von|inferieure?s?|inf\.?|inferior|desde|de",
-    r"coarser than|larger than|greater than|above|over|groesser(?: als)?|grosser(?: als)?|uber|superieure? a|mayor que|xu|>",
+LOWER = re.compile(
+    _words(
+        r"lower|min(?:imum)?|untere?r?|\w*untergrenzen?|inferieure?s?|inf\.?|inferior|xu|retained(?: on)?|ruckstand|refus|retenido",
+        r"coarser than|larger than|greater than|above|over(?:size)?|groesser(?: als)?|grosser(?: als)?|uber|superieure? a|mayor que",
+    ).pattern
+    + "|"
+    + _FROM
+    + "|>"
 )
 MID = _words(
     r"mid(?:dle|point|size)?s?|cent(?:er|re|ral)|mean|average|mittel\w*|mittler\w*|moyenn?e?s?|medi[oa]s?|geometric",
-    r"klassenmitte\w*|centre de classe|marca de clase",
+    r"klassenmitte\w*|marca de clase",
 )
+_APERTURE = _words(r"apertures?|openings?|sieves?|mesh|masch\w*|sieb\w*|tamis|ouvertures?|mallas?|luz|tamiz")
 CUMULATIVE = _words(
     r"cum\w*\.?|acum\w*\.?|kum\w*\.?|\w*summen?\w*|running total|q3|verteilungssumme|ogive",
 )
@@ -151,7 +166,7 @@ def heading(raw: str) -> Heading:
     length, mass = _LENGTH.search(text) or _LENGTH_SUFFIX.search(text), _MASS.search(text)
     percent, fraction = _PERCENT.search(text), _FRACTION.search(text)
     role = _role(text, bool(mass), bool(percent))
-    is_size = not percent and not mass and bool(length or (SIZE.search(text) and role in ("", "edge")))
+    is_size = not percent and not mass and bool(length or _SYMBOL.match(text) or (SIZE.search(text) and role in ("", "edge")))
     if is_size or (length and not percent and not mass):
         return Heading(text, True, _edge(text), "", _length_unit(length), False)
     unit = "%" if percent else (_mass_unit(mass[1]) if mass else ("1" if fraction else ""))
@@ -183,10 +198,14 @@ def _mass_unit(word: str) -> str:
 
 
 def _edge(text: str) -> str:
-    found = [name for name, pattern in (("upper", UPPER), ("lower", LOWER), ("mid", MID)) if pattern.search(text)]
-    if "upper" in found and "lower" in found:
-        return ""  # "from ... to": says nothing about one number
-    return found[0] if found else ""
+    upper, lower = UPPER.search(text), LOWER.search(text)
+    if upper and lower:
+        # "superieure a" is both a word for an upper edge and one for "over": the longer match is meant.
+        lengths = upper.end() - upper.start(), lower.end() - lower.start()
+        return "" if lengths[0] == lengths[1] else ("upper" if lengths[0] > lengths[1] else "lower")
+    if upper or lower:
+        return "upper" if upper else "lower"
+    return "mid" if MID.search(text) and not _APERTURE.search(text) else ""
 
 
 def _role(text: str, mass: bool, percent: bool) -> str:
