@@ -13,17 +13,17 @@ from typing import TYPE_CHECKING, Any
 __version__ = "0.1.0"
 
 if TYPE_CHECKING:
-    from psdflow.assess import assess
     from psdflow.assessment import Assessment
     from psdflow.distribution import SizeDistribution
     from psdflow.duty import Duty
     from psdflow.errors import InputError
     from psdflow.material import Material
+    from psdflow.pipeline import assess
     from psdflow.reports import Report, read
 
 # Where each public name lives; they are imported when first used, so that `import psdflow` stays light.
 _HOMES = {
-    "assess": "psdflow.assess",
+    "assess": "psdflow.pipeline",
     "Assessment": "psdflow.assessment",
     "SizeDistribution": "psdflow.distribution",
     "Duty": "psdflow.duty",

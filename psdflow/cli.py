@@ -60,14 +60,15 @@ def read(files: tuple[Path, ...], out: Path | None, **how: str | None) -> None:
     from rich.console import Console
 
     from psdflow.present.reading import understood
-    from psdflow.present.sheet import safe_name
-    from psdflow.reports.canonical import write_canonical
+    from psdflow.present.sheet import replacing, safe_name
+    from psdflow.reports import canonical_text
 
     console = Console(highlight=False)
     for report in _reports(files, how):
         console.print(understood(report))
         if out is not None:
-            write_canonical(report, out / f"{safe_name(report.lot)}.csv")
+            with replacing(out / f"{safe_name(report.lot)}.csv") as file:
+                file.write(canonical_text(report))
 
 
 @main.command()
@@ -95,9 +96,9 @@ def assess(
     **how: str | None,
 ) -> None:
     """Predict how the lots in FILES will fluidize, cake, blow over and be lost."""
-    from psdflow.assess import assess as predict
     from psdflow.duty import Duty
     from psdflow.material import Material
+    from psdflow.pipeline import assess as predict
     from psdflow.present.text import Subject
     from psdflow.uncertainty import DEFAULT_DRAWS, DEFAULT_SEED
     from psdflow.units import read_quantity
@@ -152,7 +153,7 @@ def _present(subjects: "list[Subject]", out: Path | None, json_to: str | None, f
 def _reports(files: tuple[Path, ...], how: dict[str, str | None]) -> "list[Report]":
     from psdflow.reports import read as read_report
 
-    given = {key: value for key, value in how.items() if value is not None}
+    given: dict[str, Any] = {key: value for key, value in how.items() if value is not None}
     return [report for file in files for report in read_report(file, **given)]
 
 

@@ -140,7 +140,7 @@ def test_a_place_that_cannot_be_written(tmp_path):
         ("size um,retained %\n100,50\n50,lots\npan,20\n", "row 3"),
         ("size um,retained %\n100,50\n100,30\npan,20\n", "100"),
         ("size um,retained %\n100,50\n50,20\npan,10\n", "80"),
-        ("size um,passing %\n200,100\n100,50\n50,60\n", "falls"),
+        ("size um,passing %\n200,100\n100,50\n50,60\n", "row 3"),
     ],
 )
 def test_bad_reports(tmp_path, text, expected):

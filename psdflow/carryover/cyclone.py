@@ -79,7 +79,8 @@ def standard_design(name: str, body_diameter: float) -> CycloneGeometry:
     """
     if name not in DESIGNS:
         raise InputError(f'cyclone design "{name}" is not known; known are: {", ".join(DESIGNS)}')
-    return CycloneGeometry(body_diameter, *(ratio * body_diameter for ratio in DESIGNS[name]), design=name)
+    sizes = {key: ratio * body_diameter for key, ratio in zip(DIMENSIONS, DESIGNS[name], strict=True)}
+    return CycloneGeometry(body_diameter=body_diameter, design=name, **sizes)
 
 
 def own_design(body_diameter: float, **dimensions: float | None) -> CycloneGeometry:
@@ -93,7 +94,8 @@ def own_design(body_diameter: float, **dimensions: float | None) -> CycloneGeome
     missing = [name for name in DIMENSIONS if dimensions.get(name) is None]
     if missing:
         raise InputError(f"cyclone: give design:, or all dimensions; missing are {', '.join(missing)}")
-    shape = CycloneGeometry(body_diameter, *(float(dimensions[name] or 0) for name in DIMENSIONS))
+    sizes = {name: float(dimensions[name] or 0) for name in DIMENSIONS}
+    shape = CycloneGeometry(body_diameter=body_diameter, design="", **sizes)
     if not 0 < shape.outlet_diameter < body_diameter:
         raise InputError("cyclone: outlet_diameter must be above 0 and below body_diameter")
     if not 0 < shape.outlet_length < shape.total_height:

@@ -183,8 +183,8 @@ def alexander_exponent(*, geometry: CycloneGeometry, temperature: ArrayLike) -> 
 
 
 def leith_licht_efficiency(
-    *, geometry: CycloneGeometry, flow: ArrayLike, size: ArrayLike, particle_density: ArrayLike, fluid_viscosity: ArrayLike,
-    temperature: ArrayLike = 293.15,
+    *, geometry: CycloneGeometry, flow: ArrayLike, size: ArrayLike, particle_density: ArrayLike,
+    fluid_viscosity: ArrayLike, temperature: ArrayLike = 293.15,
 ) -> Array:  # fmt: skip
     """``1 - exp{-2 [G τ Q (n+1)/D³]^(1/(2n+2))}``, τ = ρ_p x²/(18 µ); (..., classes) for (..., 1) inputs.
 
@@ -197,8 +197,8 @@ def leith_licht_efficiency(
 
 
 def dietz_efficiency(
-    *, geometry: CycloneGeometry, flow: ArrayLike, size: ArrayLike, particle_density: ArrayLike, fluid_viscosity: ArrayLike,
-    temperature: ArrayLike = 293.15,
+    *, geometry: CycloneGeometry, flow: ArrayLike, size: ArrayLike, particle_density: ArrayLike,
+    fluid_viscosity: ArrayLike, temperature: ArrayLike = 293.15,
 ) -> Array:  # fmt: skip
     """Three-region model; (..., classes) for (..., 1) inputs. Source: Dietz 1981 (from memory, re-derived)."""
     g, n = geometry, alexander_exponent(geometry=geometry, temperature=temperature)

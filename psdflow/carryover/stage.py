@@ -1,8 +1,243 @@
-"""What the carryover stage puts on the sheet."""
+"""What the carryover stage puts on the sheet: flux by size, disengaging height, what the cyclones keep, what is lost.
 
-from psdflow.case import Case
+Everything is for a bed of the lot as received: fines leave first, so the figures are those of the first hours.
+"""
+
+from typing import Any, NamedTuple
+
+import numpy as np
+from numpy.typing import NDArray
+
+from psdflow.carryover import elutriation
+from psdflow.carryover.cyclone_stage import cyclone_stage
+from psdflow.carryover.freeboard import disengaging_heights
+from psdflow.case import Array, Case
+from psdflow.distribution import SizeDistribution
+from psdflow.fluidization.terminal import size_with_terminal_velocity, terminal_velocity
+from psdflow.methods import in_range
 from psdflow.results import Findings
+
+LEAST_DOUBT = 0.5  # standard deviation of ln(flux) where the laws agree: a factor of 2.7 either way at 95 %
+FINENESS, MOST_PARTS = 160, 12  # sub-classes aimed at, and the most a class is cut into
+RATES = "carryover_flux carryover_rate carryover_d50 tdh"
+LOSSES = (
+    "cyclone_cut_size cyclone_efficiency cyclone_pressure_drop cyclone_inlet_velocity "
+    "loss_rate loss_d50 loss_concentration"
+)
+
+
+class Stream(NamedTuple):
+    """Carried dust by sub-class: the lot in volume-equivalent sizes, mean sizes, flux (kg/m²/s), parts a class."""
+
+    fine: SizeDistribution
+    size: Array
+    flux: Array
+    parts: int
 
 
 def carryover_stage(case: Case, found: Findings) -> None:
-    """In work."""
+    """Elutriation by size, disengaging height against the freeboard, cyclones."""
+    _carried(case, found)
+    _class_rows(case, found)
+    if case.fluid.phase == "liquid":
+        found.miss(f"{RATES} {LOSSES}", "elutriation laws and gas cyclones don't apply in a liquid")
+        return
+    if case.duty.bed is None:
+        found.miss(f"{RATES} {LOSSES}", "the duty has no bed: with a diameter")
+        return
+    stream = _flux(case, found)
+    _disengaging(case, found)
+    if not case.duty.cyclones:
+        found.miss(LOSSES, "the duty has no cyclones:; all that is carried over leaves")
+        found.classes |= {name: np.full((1,), np.nan) for name in ("cyclone_efficiency", "loss_share")}
+        return
+    cyclone_stage(case, found, stream.fine, stream.size, stream.flux, stream.parts)
+
+
+def class_sum(values: Array, parts: int) -> Array:
+    """Sub-class values summed back into the report's classes."""
+    return np.asarray(values.reshape(*values.shape[:-1], -1, parts).sum(axis=-1))
+
+
+def median_size(fine: SizeDistribution, weights: Array) -> Array:
+    """Mass-median size (m) of a stream with ``weights`` by sub-class; NaN where nothing flows."""
+    total = weights.sum(axis=-1)
+    some = total > 0
+    filled = np.where(some[..., None], weights, 1.0)
+    return np.where(some, SizeDistribution(fine.edges, filled).percentile(0.5), np.nan)
+
+
+def _carried(case: Case, found: Findings) -> None:
+    """The grain that just hangs in the flow, and the share finer than it."""
+    size = size_with_terminal_velocity(
+        terminal_velocity=case.duty.velocity.value,
+        sphericity=case.sphericity,
+        mean_free_path=case.fluid.mean_free_path,
+        **case.grain,
+    )
+    share = case.volume.scaled(1 / np.broadcast_to(size, case.shape)).undersize(1.0)
+    found.put(
+        "elutriable_size", size, "m", "haider-levenspiel-1989", note="volume-equivalent grain with u_t = velocity"
+    )
+    found.put("elutriable_share", share, "share", "haider-levenspiel-1989", note="of the lot, finer than that")
+    found.warn(
+        share > 0.5,
+        "{share:.0f} % of the lot is finer than the grain the velocity can carry ({size:.0f} µm)",
+        share=share * 100,
+        size=size * 1e6,
+    )
+
+
+def _class_rows(case: Case, found: Findings) -> None:
+    """Edges, shares and terminal velocities of the report's classes; the rest is filled in further on."""
+    middle = np.sqrt(case.volume.edges[..., :-1] * case.volume.edges[..., 1:])
+    free = _class_arguments(case)
+    none = np.full((1,), np.nan)
+    found.classes = {
+        "lower": case.report.edges[..., :-1],
+        "upper": case.report.edges[..., 1:],
+        "share": case.report.shares,
+        "terminal_velocity": terminal_velocity(diameter=middle, **free),
+        "elutriation_constant": none,
+        "carryover_flux": none,
+        "carryover_share": none,
+        "cyclone_efficiency": none,
+        "loss_share": none,
+    }
+
+
+def _class_arguments(case: Case) -> dict[str, Any]:
+    """Grain and fluid with a class axis appended."""
+    values = {**case.grain, "sphericity": case.sphericity}
+    spread: dict[str, Any] = {key: np.asarray(value, float)[..., None] for key, value in values.items()}
+    if case.fluid.mean_free_path is not None:
+        spread["mean_free_path"] = np.asarray(case.fluid.mean_free_path)
+    return spread
+
+
+def _flux(case: Case, found: Findings) -> Stream:
+    """Flux by sub-class from the laws in range, with the laws' doubt."""
+    bed = case.duty.bed
+    assert bed is not None
+    parts = min(MOST_PARTS, max(1, FINENESS // case.volume.classes))
+    fine = case.volume.refined(parts)
+    size = np.sqrt(fine.edges[..., :-1] * fine.edges[..., 1:])
+    velocity, diameter = case.duty.velocity.value, bed.diameter.value
+    # Below the critical size fines travel as clusters: the laws are held at that size, or at half the largest size
+    # that can be carried where this is smaller, so that the level part is never cut off by it.
+    level = np.minimum(elutriation.critical_size(particle_density=case.particle_density), found["elutriable_size"] / 2)
+    held = np.maximum(size, level[..., None])
+    free = _class_arguments(case)
+    u_t = terminal_velocity(diameter=held, **free) * case.scatter("u_t", 0.1)[..., None]
+    laws = elutriation.LAWS if case.draws is None else elutriation.DEFAULT_LAWS
+    constants = elutriation.rate_constants(
+        laws,
+        diameter=held,
+        terminal_velocity=u_t,
+        velocity=velocity,
+        bed_diameter=diameter,
+        minimum_fluidization_velocity=found["u_mf"][..., None],
+        **{key: free[key] for key in case.grain},
+    )
+    usable = _usable(case, fine, held, u_t < velocity, diameter)
+    chosen = {key: constants[key] for key in elutriation.DEFAULT_LAWS}
+    constant = elutriation.combined_rate_constant(chosen, usable)
+    totals = {key: (value * fine.shares).sum(axis=-1) for key, value in constants.items()}
+    scatter = case.scatter("elutriation", _doubt(totals, usable))
+    fluidized = np.where(velocity > found["u_mf"], 1.0, 0.0)
+    flux = constant * fine.shares * (scatter * fluidized)[..., None]
+    any_law = np.any([np.broadcast_to(gate, case.shape) for gate in usable.values()], axis=0)
+    total = found.put(
+        "carryover_flux",
+        flux.sum(axis=-1),
+        "kg/m^2/s",
+        "elutriation-mean",
+        in_range=any_law,
+        alternatives=totals,
+        note="above the disengaging height, lot as received",
+    )
+    found.put("carryover_rate", total * np.pi / 4 * diameter**2, "kg/s", "elutriation-mean", in_range=any_law)
+    found.put("carryover_d50", median_size(fine, flux), "m", "elutriation-mean", note="volume-equivalent")
+    _flux_warnings(case, found, any_law, level, total)
+    share = np.where(total > 0, total, np.nan)[..., None]
+    found.classes |= {
+        "elutriation_constant": class_sum(constant, parts) / parts,
+        "carryover_flux": class_sum(flux, parts),
+        "carryover_share": class_sum(flux, parts) / share,
+    }
+    return Stream(fine, size, flux, parts)
+
+
+def _usable(
+    case: Case, fine: SizeDistribution, size: Array, carried: NDArray[np.bool_], bed_diameter: float
+) -> dict[str, NDArray[np.bool_]]:
+    """Whether each law's published range covers the lot: by the geometric mean size of what can be carried."""
+    weight = fine.shares * carried
+    total = weight.sum(axis=-1)
+    mean = np.exp((weight * np.log(size)).sum(axis=-1) / np.where(total > 0, total, 1.0))
+    return {
+        key: in_range(
+            key,
+            diameter=mean,
+            velocity=case.duty.velocity.value,
+            bed_diameter=bed_diameter,
+            particle_density=case.particle_density,
+        )
+        for key in elutriation.DEFAULT_LAWS
+    }
+
+
+def _doubt(totals: dict[str, Array], usable: dict[str, NDArray[np.bool_]]) -> Array:
+    """Standard deviation of ln(flux): the spread of the laws that were combined, never under `LEAST_DOUBT`."""
+    logs = np.stack([np.log(np.maximum(totals[key], 1e-30)) for key in usable])
+    gates = np.stack([np.broadcast_to(gate, logs.shape[1:]) for gate in usable.values()])
+    gates = np.where(gates.any(axis=0), gates, True)
+    count = gates.sum(axis=0)
+    mean = (logs * gates).sum(axis=0) / count
+    spread = np.sqrt((gates * (logs - mean) ** 2).sum(axis=0) / np.maximum(count - 1, 1))
+    return np.asarray(np.clip(spread, LEAST_DOUBT, 2.0))
+
+
+def _flux_warnings(case: Case, found: Findings, any_law: NDArray[np.bool_], level: Array, total: Array) -> None:
+    found.warn(
+        ~any_law & (total > 0),
+        "no elutriation law was fitted to this velocity, bed and size: carryover is an extrapolation",
+    )
+    fines = case.volume.scaled(1 / np.broadcast_to(level, case.shape)).undersize(1.0)
+    found.warn(
+        (fines > 0.1) & (total > 0),
+        "{share:.0f} % of the lot is below {size:.0f} µm, where fines travel as clusters: its flux is an upper bound",
+        share=fines * 100,
+        size=level * 1e6,
+    )
+    if case.duty.feed is not None and case.duty.bed is not None:
+        rate = found["carryover_rate"]
+        found.warn(
+            rate > case.duty.feed.rate.value,
+            "the first carryover ({rate:.0f} kg/h) exceeds the feed: it falls as the bed loses its fines",
+            rate=rate * 3600,
+        )
+
+
+def _disengaging(case: Case, found: Findings) -> None:
+    bed = case.duty.bed
+    assert bed is not None
+    velocity, diameter = case.duty.velocity.value, bed.diameter.value
+    every = disengaging_heights(
+        velocity=velocity,
+        minimum_fluidization_velocity=found["u_mf"],
+        bed_diameter=diameter,
+        bubble_diameter=found.get("bubble_diameter"),
+    )
+    key = "zenz-weil-tdh"
+    value = every[key] * case.method_scatter("tdh", np.full((), key))
+    inside = in_range(key, velocity=velocity, bed_diameter=diameter)
+    tdh = found.put("tdh", value, "m", key, in_range=inside, alternatives=every, note="above the bed surface")
+    if bed.freeboard_height is not None:
+        free = bed.freeboard_height.value
+        found.warn(
+            tdh > free,
+            f"the outlet is {free:.2g} m above the bed, below the disengaging height of {{tdh:.2g}} m: "
+            "more is carried over than given",
+            tdh=tdh,
+        )

@@ -6,6 +6,7 @@ Readable in grey: nothing is told by colour alone; lines carry their names inste
 from pathlib import Path
 from typing import Any
 
+import matplotlib as mpl
 import numpy as np
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
@@ -41,8 +42,6 @@ def _plain_log(axes: Axes, steps: tuple[float, ...] = (1,)) -> None:
 
 def distribution_figure(assessment: Assessment, lot: int = 0) -> Figure:
     """Density per ln(size) as steps, cumulative curve above it; open ends hatched, their bounds assumed."""
-    import matplotlib as mpl
-
     with mpl.rc_context(STYLE):
         report = assessment.distribution.lot(lot) if assessment.found.shape else assessment.distribution
         edges = report.edges * 1e6
@@ -102,8 +101,6 @@ RUNGS: tuple[tuple[str, str], ...] = (
 
 def velocity_figure(assessment: Assessment, lot: int = 0) -> Figure:
     """Every velocity with its 95 % interval on one log axis, the operating velocity across them all."""
-    import matplotlib as mpl
-
     with mpl.rc_context(STYLE):
         rows = [(name, row) for key, name in RUNGS if key in assessment
                 and (row := assessment.row(key, lot)).value is not None]  # fmt: skip
@@ -142,5 +139,5 @@ def save(figure: Figure, path: Path) -> None:
     """Write a figure as SVG or PNG by the file's suffix, the same bytes for the same input."""
     kind = path.suffix.lstrip(".")
     metadata = {"Date": None} if kind == "svg" else {"Software": None}
-    with replacing(path, "wb") as file:
+    with mpl.rc_context(STYLE), replacing(path, "wb") as file:
         figure.savefig(file, format=kind, dpi=150, metadata=metadata)

@@ -7,7 +7,7 @@ import numpy as np
 
 from psdflow.errors import InputError, shown
 from psdflow.reports.apertures import ASTM_NUMBERS, Size, in_metres, size_of
-from psdflow.reports.numerals import Cell, Decimal, plain
+from psdflow.reports.numerals import LENGTHS, Cell, Decimal, plain
 from psdflow.reports.tables import Table, is_footer
 from psdflow.reports.words import Heading, heading
 
@@ -172,7 +172,7 @@ def _no_unknown_rows(
 
 def _unit(table: Table, columns: SizeColumns, sizes: list[Size], size_unit: str | None) -> tuple[str, list[str]]:
     headings = [heading(table.headers[c]) for c in columns.all]
-    header_unit = next((h.unit for h in headings if h.unit), "")
+    header_unit = next((h.unit for h in headings if h.unit in LENGTHS), "")
     bare = [s for s in sizes if not s.unit and (s.low or s.high)]
     cell_units = {s.unit for s in sizes if s.unit}
     if size_unit:

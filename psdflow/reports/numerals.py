@@ -152,7 +152,7 @@ def decimal_of(rows: Sequence[Sequence[Cell]], where: str) -> Decimal:
     for row in rows:
         if votes and not commas:
             break  # without any comma there is nothing to weigh
-        numbers = [c for c in row if not isinstance(c, str) or (c[-1:] and _NUMBERISH.fullmatch(c))]
+        numbers = [c for c in row if not isinstance(c, str) or (0 < len(c) <= 40 and _NUMBERISH.fullmatch(c))]
         if len(numbers) < 2:
             continue
         for cell in numbers:

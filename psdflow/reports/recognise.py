@@ -89,7 +89,7 @@ def _undecided(table: Table, why: str) -> NoReturn:
     for j in range(len(table.headers)):
         if not _is_blank(table, j):
             values = [row[j] for row in table.rows[:3]]
-            text = ", ".join(f"{v:g}" if isinstance(v, float) else v for v in values)
+            text = ", ".join(f"{v:g}" if isinstance(v, float) else " ".join(v.split())[:20] for v in values)
             header = " ".join(table.headers[j].split())[:40]
             where = f"row {table.grid.numbers[table.lines[j]]}" if table.across else letters(j)
             seen.append(f"{where} {shown(header) if header else '(no header)'}: {text}, …")

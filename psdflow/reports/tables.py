@@ -9,6 +9,7 @@ from psdflow.reports.cells import Grid, letters
 from psdflow.reports.numerals import UNITS, Cell, Decimal, numeral, plain
 from psdflow.reports.words import INPUT_MASS, LOSS, LOT, NAMES, SAMPLE, STATISTIC, TOTAL, heading
 
+TEXT_ROWS = 500  # rows of text around the tables that are kept
 HEADER_ROWS = 3  # how many rows over a table can be its header
 
 
@@ -287,7 +288,7 @@ def _fields(grid: Grid, kinds: list[str], used: set[int], tables: list[Table]) -
     fields: dict[str, str] = {}
     titles: list[str] = []
     for i, row in enumerate(grid.rows):
-        if i in used or kinds[i] == "blank":
+        if i in used or kinds[i] == "blank" or len(titles) + len(fields) > TEXT_ROWS:
             continue
         filled = [(j, _text(cell)) for j, cell in enumerate(row) if cell != ""]
         filled = [(j, text) for k, (j, text) in enumerate(filled) if not k or text != filled[k - 1][1]]

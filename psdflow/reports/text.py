@@ -91,14 +91,15 @@ def separator_of(lines: list[str]) -> str:
     return next((s for s in _SEPARATORS if counts[s] == most), "") if most else ""
 
 
+def _numberish(cell: str) -> bool:
+    return len(cell) <= 40 and bool(_HAS_DIGIT.search(cell)) and bool(_NUMBERISH.fullmatch(cell))
+
+
 def _score(cells: list[str]) -> float:
     filled = [c for c in (cell.strip(" \"'") for cell in cells) if c]
     if len(filled) < 2:
         return 0.0
-    good = sum(
-        len(c) <= 40 and bool(_HAS_DIGIT.search(c)) and bool(_NUMBERISH.fullmatch(c)) and not _TWO_NUMBERS.search(c)
-        for c in filled
-    )
+    good = sum(_numberish(c) and not _TWO_NUMBERS.search(c) for c in filled)
     return good / len(filled) if good >= 2 else 0.0
 
 
@@ -139,7 +140,7 @@ def _split_spaces(line: str) -> list[str]:
     wide = re.split(r"\s{2,}|\t", line)
     glued = _GLUE_RANGE.sub(r"\1", _GLUE_SIGN.sub("", _GLUE_UNIT.sub("", line)))
     narrow = glued.split()
-    numbers = sum(bool(_HAS_DIGIT.search(cell)) and bool(_NUMBERISH.fullmatch(cell)) for cell in narrow)
+    numbers = sum(_numberish(cell) for cell in narrow)
     if numbers and numbers >= len(narrow) - 1 and len(narrow) > 1:
         return narrow
     return wide

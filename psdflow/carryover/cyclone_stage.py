@@ -1,0 +1,121 @@
+"""What the cyclones keep and what is lost: the stages in series, each fed with what the one before let through."""
+
+import numpy as np
+
+from psdflow.carryover import cyclone_models as models
+from psdflow.carryover.cyclone import (
+    DIMENSIONS,
+    HIGHEST_INLET_VELOCITY,
+    LOWEST_INLET_VELOCITY,
+    CycloneGeometry,
+    own_design,
+    shape_doubts,
+    standard_design,
+)
+from psdflow.case import Array, Case
+from psdflow.distribution import SizeDistribution
+from psdflow.duty import Cyclone
+from psdflow.results import Findings
+from psdflow.units import NORMAL_TEMPERATURE, STANDARD_ATMOSPHERE
+
+
+def geometry_of(cyclone: Cyclone) -> CycloneGeometry:
+    """The shape a duty's cyclone entry stands for."""
+    body = cyclone.body_diameter.value
+    if cyclone.design is not None:
+        return standard_design(cyclone.design, body)
+    given = {name: getattr(cyclone, name) for name in DIMENSIONS}
+    return own_design(body, **{name: length.value if length else None for name, length in given.items()})
+
+
+def cyclone_stage(case: Case, found: Findings, fine: SizeDistribution, size: Array, flux: Array, parts: int) -> None:
+    """Cut size, efficiency, pressure drop and loss; ``flux`` (kg/m²/s) by sub-class enters the first stage."""
+    bed = case.duty.bed
+    assert bed is not None
+    velocity, area = case.duty.velocity.value, np.pi / 4 * bed.diameter.value**2
+    penetration = np.ones_like(flux)
+    total_drop: Array = np.asarray(0.0)
+    for number, entry in enumerate(case.duty.cyclones, start=1):
+        suffix = "" if number == 1 else f"_{number}"
+        shape, flow = geometry_of(entry), velocity * area / entry.count
+        cut, slope = _cut(case, found, shape, flow, suffix)
+        entering = flux * penetration
+        passed = 1 - models.grade_efficiency(size=size, cut=cut, slope=slope)
+        passed = _loaded(case, fine, entering, passed, cut, velocity)
+        penetration = penetration * passed
+        total_drop = total_drop + _pressure_drop(case, found, shape, flow, suffix)
+        _inlet(found, shape, flow, suffix, number)
+    _losses(case, found, fine, flux, penetration, parts)
+    if len(case.duty.cyclones) > 1:
+        found.put("cyclone_pressure_drop_total", total_drop, "Pa", "sum of the stages")
+
+
+def _cut(case: Case, found: Findings, shape: CycloneGeometry, flow: float, suffix: str) -> tuple[Array, Array]:
+    """Cut size and grade-curve slope of the recommended model; every model's cut as an alternative."""
+    every = models.cut_sizes(geometry=shape, flow=flow, **case.grain)
+    key = next(iter(every))
+    cut = every[key] * case.method_scatter(f"cyclone cut{suffix}", np.full((), key))
+    cut = np.broadcast_to(cut, case.shape)
+    note = "half of this size is caught; volume-equivalent"
+    found.put(f"cyclone_cut_size{suffix}", cut, "m", key, alternatives=every, note=note)
+    return cut, np.broadcast_to(models.grade_slope(key, geometry=shape, cut=cut), case.shape)
+
+
+def _loaded(case: Case, fine: SizeDistribution, entering: Array, passed: Array, cut: Array, velocity: float) -> Array:
+    """Penetration with what drops out at once because the gas can't carry it through the vortex."""
+    from psdflow.carryover.stage import median_size
+
+    loading = entering.sum(axis=-1) / (velocity * case.fluid.density)
+    median = np.nan_to_num(median_size(fine, entering), nan=1.0)
+    limit = models.critical_loading(cut=cut, median_size=median, loading=loading)
+    return models.penetration_with_loading(penetration=passed, loading=loading, limit=limit)
+
+
+def _pressure_drop(case: Case, found: Findings, shape: CycloneGeometry, flow: float, suffix: str) -> Array:
+    every = models.pressure_drops(geometry=shape, flow=flow, fluid_density=case.fluid.density)
+    key = next(iter(every))
+    value = every[key] * case.method_scatter(f"cyclone drop{suffix}", np.full((), key))
+    note = "clean gas; lower with dust"
+    return found.put(f"cyclone_pressure_drop{suffix}", value, "Pa", key, alternatives=every, note=note)
+
+
+def _inlet(found: Findings, shape: CycloneGeometry, flow: float, suffix: str, number: int) -> None:
+    inlet = flow / shape.inlet_area
+    found.put(f"cyclone_inlet_velocity{suffix}", inlet, "m/s", "definition")
+    found.warn(
+        not LOWEST_INLET_VELOCITY <= inlet <= HIGHEST_INLET_VELOCITY,
+        f"cyclone {number}: the inlet velocity of {inlet:.1f} m/s is outside {LOWEST_INLET_VELOCITY:.0f} to "
+        f"{HIGHEST_INLET_VELOCITY:.0f} m/s: change its size or number",
+    )
+    for doubt in shape_doubts(shape):
+        found.warn(True, f"cyclone {number}: {doubt}")
+
+
+def _losses(case: Case, found: Findings, fine: SizeDistribution, flux: Array, penetration: Array, parts: int) -> None:
+    """Efficiency of all stages together, what is lost an hour and a year, its size and concentration."""
+    from psdflow.carryover.stage import class_sum, median_size
+
+    bed = case.duty.bed
+    assert bed is not None
+    lost = flux * penetration
+    carried, gone = flux.sum(axis=-1), lost.sum(axis=-1)
+    some = np.where(carried > 0, carried, np.nan)
+    method = "cyclone-grade"
+    found.put("cyclone_efficiency", 1 - gone / some, "share", method, note="of all stages, by mass")
+    rate = found.put(
+        "loss_rate", gone * np.pi / 4 * bed.diameter.value**2, "kg/s", method, note="past the last cyclone"
+    )
+    found.put("loss_d50", median_size(fine, lost), "m", method, note="volume-equivalent")
+    concentration = gone / case.duty.velocity.value
+    found.put("loss_concentration", concentration, "kg/m^3", method, note="in the gas at bed conditions")
+    if case.fluid.temperature is not None and case.fluid.pressure is not None:
+        normal = case.fluid.temperature / NORMAL_TEMPERATURE * STANDARD_ATMOSPHERE / case.fluid.pressure
+        note = "at 0 °C and 101.325 kPa, moist as it is"
+        found.put("loss_concentration_normal", concentration * normal, "kg/m^3", method, note=note)
+    if case.duty.operating_hours is not None:
+        found.put("loss_per_year", rate * case.duty.operating_hours.value, "kg", method, note="first-hours rate held")
+    share = np.where(gone > 0, gone, np.nan)[..., None]
+    found.classes |= {
+        "cyclone_efficiency": 1 - class_sum(penetration, parts) / parts,
+        "loss_share": class_sum(lost, parts) / share,
+    }
