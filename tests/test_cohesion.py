@@ -59,7 +59,7 @@ def test_measured_pressure_drop_overrides():
 
 
 def test_flags():
-    shares = {"below_10um": np.array([0.05, 0.15, 0.25]), "below_20um": np.zeros(3), "below_45um": np.zeros(3)}
+    shares = {"below_10um": np.array([0.05, 0.15, 0.25]), "below_20um": np.zeros(3)}
     caution, strong = fines_flags(shares)
     assert caution.tolist() == [False, True, True]
     assert strong.tolist() == [False, False, True]

@@ -7,7 +7,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 BOND_BAND = (250.0, 1000.0)  # for the force of REFERENCE_HAMAKER and REFERENCE_ASPERITY. Judgement, see the catalogue
-FINES_CAUTION = {"below_10um": 0.10, "below_20um": 0.30, "below_45um": 0.40}
+FINES_CAUTION = {"below_10um": 0.10, "below_20um": 0.30}
 FINES_STRONG = {"below_10um": 0.20}
 SOFTENING_MARGIN = 20.0  # K below the softening temperature that already call for caution
 

@@ -42,8 +42,16 @@ def cohesion_stage(case: Case, found: Findings) -> None:
     found.put("cohesion_probability", judged.probability, "1", RULE)
     found.put("cohesion_score", judged.score, "1", RULE, note="-2 flows, +2 cohesive; the band of doubt is -1 to +1")
     if ratio is not None:
-        found.indicate(Indicator("bed pressure drop / bed weight", ratio, "", "low from 0.9, high below 0.8",
-                                 sign.clipped((0.85 - ratio) / 0.05), "measured in a column; thresholds judged"))  # fmt: skip
+        found.indicate(
+            Indicator(
+                "bed pressure drop / bed weight",
+                ratio,
+                "",
+                "low from 0.9, high below 0.8",
+                sign.clipped((0.85 - ratio) / 0.05),
+                "measured in a column; thresholds judged",
+            )
+        )
     found.warn(judged.conflict, "size and flow tests contradict each other on cohesion: run a small fluidization test")
     open_verdict = judged.risk == RISKS.index("elevated")
     if case.material.hausner_ratio is None:
@@ -83,14 +91,28 @@ def _size_family(case: Case, found: Findings) -> tuple[Array, Array, Array]:
     by_bond = sign.bond_score(bond_number=bond)
     low, high = float(np.mean(finest)) * MICRO, float(np.mean(coarsest)) * MICRO
     found.indicate(
-        Indicator("mean size d_sv", case.diameter_sv * MICRO, "µm", f"C/A band {low:.0f} to {high:.0f} µm", by_size,
-                  "Molerus 1982, both contact forces (from memory)", counts=not measured)
-    )  # fmt: skip
+        Indicator(
+            "mean size d_sv",
+            case.diameter_sv * MICRO,
+            "µm",
+            f"C/A band {low:.0f} to {high:.0f} µm",
+            by_size,
+            "Molerus 1982, both contact forces (from memory)",
+            counts=not measured,
+        )
+    )
     low, high = sign.BOND_BAND
     found.indicate(
-        Indicator("granular Bond number", bond, "", f"C/A band {low:.0f} to {high:.0f}", by_bond,
-                  "van der Waals force of rough grains (Rumpf form, from memory); band judged", counts=measured)
-    )  # fmt: skip
+        Indicator(
+            "granular Bond number",
+            bond,
+            "",
+            f"C/A band {low:.0f} to {high:.0f}",
+            by_bond,
+            "van der Waals force of rough grains (Rumpf form, from memory); band judged",
+            counts=measured,
+        )
+    )
     note = "" if measured else "reference grain: Hamaker 6.5e-20 J, asperities 0.2 µm; shown, not counted"
     found.put("bond_number", bond, "1", "rumpf-rough-spheres", note=note)
     return (by_bond if measured else by_size), np.asarray(finest), np.asarray(coarsest)
@@ -114,36 +136,56 @@ def _flow_family(case: Case, found: Findings) -> dict[str, Array]:
         hausner = case.around("hausner_ratio", nominal, PROPERTY_SD["hausner_ratio"], 1.0)
         found.put("hausner_ratio", hausner, "1", "measured", note="±0.06: the tapping protocol isn't stated")
         scores["hausner_ratio"] = sign.hausner_score(hausner_ratio=hausner)
-        found.indicate(Indicator("Hausner ratio", hausner, "", "1.25 to 1.40", scores["hausner_ratio"],
-                                 "Geldart, Harnby & Wong 1984 (from memory)"))  # fmt: skip
+        found.indicate(
+            Indicator(
+                "Hausner ratio",
+                hausner,
+                "",
+                "1.25 to 1.40",
+                scores["hausner_ratio"],
+                "Geldart, Harnby & Wong 1984 (from memory)",
+            )
+        )
     ffc = case.given("flow_function", relative=True, low=0.1)
     if ffc is not None:
         scores["flow_function"] = sign.flow_function_score(flow_function=ffc)
-        found.indicate(Indicator("flow function ffc", ffc, "", "2 to 8", scores["flow_function"],
-                                 "classes of Jenike 1964 (from memory)"))  # fmt: skip
+        found.indicate(
+            Indicator(
+                "flow function ffc", ffc, "", "2 to 8", scores["flow_function"], "classes of Jenike 1964 (from memory)"
+            )
+        )
     repose = case.given("angle_of_repose", low=0.05, high=1.5)
     if repose is not None:
         scores["angle_of_repose"] = sign.repose_score(angle_of_repose=repose)
-        found.indicate(Indicator("angle of repose", np.rad2deg(repose), "°", "40 to 45°", scores["angle_of_repose"],
-                                 "Geldart et al. 2006 (from memory)"))  # fmt: skip
+        found.indicate(
+            Indicator(
+                "angle of repose",
+                np.rad2deg(repose),
+                "°",
+                "40 to 45°",
+                scores["angle_of_repose"],
+                "Geldart et al. 2006 (from memory)",
+            )
+        )
     return scores
 
 
 def _fines(case: Case, found: Findings) -> tuple[NDArray[np.bool_], NDArray[np.bool_]]:
+    """Fines flags. The share below 45 µm is not one: up to a third it helps group A, and the mean size tells the rest."""
     shares = {key: case.report.undersize(float(key[6:-2]) * 1e-6) for key in sign.FINES_CAUTION}
     for key, limit in sign.FINES_CAUTION.items():
         upper = sign.FINES_STRONG.get(key, 2 * limit)
         score = sign.clipped((shares[key] - (limit + upper) / 2) / ((upper - limit) / 2))
-        text = f"caution over {limit:.0%}" + (f", strong over {upper:.0%}" if key in sign.FINES_STRONG else "")
-        found.indicate(Indicator(f"share below {key[6:-2]} µm", shares[key] * 100, "%", text, score,
-                                 "judged from percolation of fines", only_raises=True))  # fmt: skip
+        text = f"caution over {limit * 100:.0f} %"
+        text += f", strong over {upper * 100:.0f} %" if key in sign.FINES_STRONG else ""
+        name, source = f"share below {key[6:-2]} µm", "judged from percolation of fines"
+        found.indicate(Indicator(name, shares[key] * 100, "%", text, score, source, only_raises=True))
     caution, strong = sign.fines_flags(shares)
     found.warn(
         caution,
-        "fines ({f10:.1f} % below 10 µm, {f20:.1f} % below 20 µm, {f45:.1f} % below 45 µm) raise the cohesion risk",
+        "fines ({f10:.1f} % below 10 µm, {f20:.1f} % below 20 µm) raise the cohesion risk",
         f10=shares["below_10um"] * 100,
         f20=shares["below_20um"] * 100,
-        f45=shares["below_45um"] * 100,
     )
     return caution, strong
 
@@ -157,9 +199,17 @@ def _softening(
     near, over = sign.softening_flags(temperature=temperature, softening_temperature=softening.value)
     margin = softening.value - temperature
     found.warn(near, f"the bed is {abs(margin):.0f} K {'over' if margin <= 0 else 'below'} the softening temperature")
-    found.indicate(Indicator("margin to softening", np.asarray(margin), "K", "caution under 20 K, strong under 0 K",
-                             sign.clipped((sign.SOFTENING_MARGIN / 2 - margin) / (sign.SOFTENING_MARGIN / 2)),
-                             "judgement", only_raises=True))  # fmt: skip
+    found.indicate(
+        Indicator(
+            "margin to softening",
+            np.asarray(margin),
+            "K",
+            "caution under 20 K, strong under 0 K",
+            sign.clipped((sign.SOFTENING_MARGIN / 2 - margin) / (sign.SOFTENING_MARGIN / 2)),
+            "judgement",
+            only_raises=True,
+        )
+    )
     return np.asarray(np.logical_or(caution, near)), np.asarray(np.logical_or(strong, over))
 
 

@@ -6,7 +6,7 @@ Rule (screening; not validated between 15 and 25 µm):
    and asperity size are given, else the place of d_sv in the band of the C/A boundary; weight 1. Flow: the weighted
    mean of Hausner ratio (1), flow function (1) and angle of repose (0.4); weight their sum, at most 1.5,
    halved above 200 °C because room-temperature tests don't transfer to a hot bed.
-2. The score is the weighted mean of the families. Fines over a caution limit, or a bed within 20 K of
+2. The score is the weighted mean of the families. Fines below 10 or 20 µm over a caution limit, or a bed within 20 K of
    softening, add 1; over a strong limit 2. Nothing is subtracted.
 3. Score >= 1: high. Score <= -1: low. Else elevated.
 4. Families of opposite sign more than 2 apart are a conflict: elevated, test it; never averaged away.

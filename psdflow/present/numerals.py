@@ -1,5 +1,6 @@
 """Numbers and units as people read them: three significant digits, µm, kg/h, per cent."""
 
+import math
 from typing import NamedTuple
 
 # Sheet unit -> unit on screens and its factor; rates and concentrations by key, as kg/s serves both bed and loss.
@@ -48,8 +49,17 @@ def digits(value: float | None, significant: int = 3) -> str:
     return text
 
 
-def span_of(low: float | None, high: float | None, factor: float) -> str:
-    """An interval at two significant digits, empty where there is none."""
+def figure(value: float, unit: str, significant: int = 3) -> str:
+    """A number for people: as `digits`, but a share just under 100 % shows what is missing from it."""
+    if unit == "%" and 99 < value < 100:
+        return f"{value:.{min(6, 1 - math.floor(math.log10(100 - value)))}f}"
+    if unit == "%" and 0 < value < 1e-3:
+        return "<0.001"
+    return digits(value, significant)
+
+
+def span_of(low: float | None, high: float | None, unit: Friendly) -> str:
+    """An interval at two significant digits in the friendly unit, empty where there is none."""
     if low is None or high is None:
         return ""
-    return f"{digits(low * factor, 2)} to {digits(high * factor, 2)}"
+    return " to ".join(figure(end * unit.factor, unit.unit, 2) for end in (low, high))

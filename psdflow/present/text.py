@@ -10,7 +10,7 @@ from rich.text import Text
 
 from psdflow.assessment import Assessment, Row
 from psdflow.methods import catalogue
-from psdflow.present.numerals import digits, friendly, span_of
+from psdflow.present.numerals import digits, figure, friendly, span_of
 from psdflow.present.words import short_verdict, verdict
 
 # What the page shows, by heading; everything else is on the sheet.
@@ -47,6 +47,9 @@ NAMES = {
 }  # fmt: skip
 
 
+WIDE = 110  # columns from which methods and sources fit beside the numbers
+
+
 class Subject(NamedTuple):
     """One lot of one assessment, with what the report said."""
 
@@ -57,14 +60,14 @@ class Subject(NamedTuple):
     report_warnings: tuple[str, ...]
 
 
-def page(subject: Subject) -> RenderableType:
-    """The whole page of one lot."""
+def page(subject: Subject, *, wide: bool = True) -> RenderableType:
+    """The whole page of one lot; a narrow one leaves methods and sources to the sheet."""
     assessment, lot = subject.assessment, subject.lot
     return Group(
         _title(subject),
         *(Padding(Text(line), (0, 0, 0, 2)) for line in verdict(assessment, lot)),
-        Padding(_numbers(assessment, lot), (1, 0, 0, 2)),
-        Padding(_signs(assessment, lot), (1, 0, 0, 2)),
+        Padding(_numbers(assessment, lot, wide), (1, 0, 0, 2)),
+        Padding(_signs(assessment, lot, wide), (1, 0, 0, 2)),
         *_lines("Watch", [*subject.report_warnings, *assessment.warnings(lot)], "yellow"),
         *_lines("Assumed", assessment.assumptions, ""),
         Text(""),
@@ -81,31 +84,40 @@ def brief(subject: Subject) -> RenderableType:
     )
 
 
+# Columns of the overview: sheet key and heading.
+OVERVIEW = (
+    ("group", "group"),
+    ("d32", "d32"),
+    ("below_45um", "<45 µm"),
+    ("u_mf", "u_mf"),
+    ("cohesion_probability", "cohesion"),
+    ("loss_rate", "lost"),
+)
+
+
 def overview(subjects: Sequence[Subject]) -> RenderableType:
     """One line a lot."""
     table = Table(box=None, pad_edge=False, padding=(0, 2, 0, 0), header_style="bold")
-    columns = ("group", "d32", "below_45um", "u_mf", "cohesion_probability", "carryover_rate", "loss_rate")
-    first = subjects[0].assessment
-    shown = [key for key in columns if any(_row(s, key) is not None for s in subjects)]
-    heads = {"group": "group", "cohesion_probability": "cohesion", "carryover_rate": "carried", "loss_rate": "lost"}
-    table.add_column("lot", no_wrap=True)
-    table.add_column("verdict")
-    for key in shown:
-        unit = friendly(key, first.row(key).unit if key in first else "1").unit
-        table.add_column(heads.get(key, NAMES.get(key, key).split(" ")[-1] if key != "below_45um" else "<45 µm") +
-                         (f"\n{unit}" if unit else ""), justify="right")  # fmt: skip
+    table.add_column("lot", overflow="fold")
+    table.add_column("verdict", overflow="fold")
+    shown = [(key, head) for key, head in OVERVIEW if any(_row(subject, key) for subject in subjects)]
+    for key, head in shown:
+        first = next(row for subject in subjects if (row := _row(subject, key)))
+        unit = friendly(key, first.unit).unit
+        table.add_column(f"{head}\n{unit}".rstrip(), justify="right", no_wrap=True)
     for subject in subjects:
-        cells = []
-        for key in shown:
-            row = _row(subject, key)
-            if row is None or row.value is None:
-                cells.append("–")
-            elif isinstance(row.value, str):
-                cells.append(row.value)
-            else:
-                cells.append(digits(row.value * friendly(key, row.unit).factor))
+        cells = [_cell(_row(subject, key)) for key, _ in shown]
         table.add_row(Text(subject.name), Text(short_verdict(subject.assessment, subject.lot)), *cells)
     return table
+
+
+def _cell(row: Row | None) -> str:
+    if row is None or row.value is None:
+        return "–"
+    if isinstance(row.value, str):
+        return row.value
+    unit = friendly(row.key, row.unit)
+    return figure(row.value * unit.factor, unit.unit, 2)
 
 
 def foot(assessment: Assessment) -> RenderableType:
@@ -122,7 +134,7 @@ def write(console: Console, subjects: Sequence[Subject], *, full: bool) -> None:
     """Print everything: one lot as a page, several as an overview with verdicts (pages if ``full``)."""
     if len(subjects) == 1 or full:
         for subject in subjects:
-            console.print(page(subject))
+            console.print(page(subject, wide=console.width >= WIDE))
     else:
         console.print(overview(subjects))
         console.print()
@@ -144,36 +156,45 @@ def _title(subject: Subject) -> Text:
     )
 
 
-def _numbers(assessment: Assessment, lot: int) -> Table:
-    table = Table(box=None, pad_edge=False, padding=(0, 2, 0, 0), show_header=True, header_style="dim")
-    for head, side in (("", "left"), ("quantity", "left"), ("value", "right"), ("95 % interval", "right"),
-                       ("unit", "left"), ("method", "left")):  # fmt: skip
-        table.add_column(head, justify="right" if side == "right" else "left")
+def _plain_table(heads: Sequence[str], right: Sequence[str] = ()) -> Table:
+    table = Table(box=None, pad_edge=False, padding=(0, 2, 0, 0), header_style="dim")
+    for head in heads:
+        table.add_column(head, justify="right" if head in right else "left", no_wrap=head in ("", *right))
+    return table
+
+
+def _numbers(assessment: Assessment, lot: int, wide: bool) -> Table:
+    heads = ["", "quantity", "value", "95 % interval", "unit", *(["method"] if wide else [])]
+    table = _plain_table(heads, ("value", "95 % interval"))
     for heading, keys in PAGE.items():
-        first = True
+        shown = heading
         for key in keys:
             row = assessment.row(key, lot) if key in assessment else None
             if row is None or row.value is None or isinstance(row.value, str):
                 continue
-            unit, factor = friendly(key, row.unit)
+            unit = friendly(key, row.unit)
             entry = catalogue().get(row.method)
-            method = (entry.name if entry else row.method) + ("" if row.in_range else "  (outside its range)")
-            table.add_row(heading if first else "", NAMES.get(key, key), digits(row.value * factor),
-                          span_of(row.low, row.high, factor), unit, method)  # fmt: skip
-            first = False
+            method = entry.name if entry else row.method
+            outside = "" if row.in_range else "outside its range"
+            last = [f"{method}, {outside}" if outside else method] if wide else []
+            span = span_of(row.low, row.high, unit)
+            name = NAMES.get(key, key) + (f" ({outside})" if outside and not wide else "")
+            table.add_row(shown, name, figure(row.value * unit.factor, unit.unit), span, unit.unit, *last)
+            shown = ""
     return table
 
 
-def _signs(assessment: Assessment, lot: int) -> RenderableType:
+def _signs(assessment: Assessment, lot: int, wide: bool) -> RenderableType:
     signs = assessment.indicators(lot)
     if not signs:
         return Text("")
-    table = Table(box=None, pad_edge=False, padding=(0, 2, 0, 0), header_style="dim")
-    for head in ("sign of cohesion", "value", "threshold", "state", "use", "source"):
-        table.add_column(head, justify="right" if head == "value" else "left")
+    table = _plain_table(
+        ["sign of cohesion", "value", "threshold", "state", *(["use", "source"] if wide else [])], ("value",)
+    )
     for sign in signs:
-        table.add_row(sign["name"], f"{digits(sign['value'])} {sign['unit']}".strip(), sign["threshold"],
-                      sign["state"], sign["use"], sign["source"])  # fmt: skip
+        value = f"{digits(sign['value'])} {sign['unit']}".strip()
+        state = sign["state"] if sign["use"] != "shown only" or wide else f"{sign['state']} (not counted)"
+        table.add_row(sign["name"], value, sign["threshold"], state, *([sign["use"], sign["source"]] if wide else []))
     return table
 
 

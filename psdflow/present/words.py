@@ -27,7 +27,7 @@ def _fluidizes(rows: dict[str, Row]) -> str:
     if group is None or group.value is None:
         return f"In this liquid: {state}."
     share = rows[f"probability_{str(group.value).lower()}"].value
-    sure = f" ({float(share or 0):.0%} of draws and boundary sets)"
+    sure = f" ({float(share or 0) * 100:.0f} % of draws and boundary sets)"
     state = f"If it fluidizes at all: {state}" if group.value == "C" else f"{state[0].upper()}{state[1:]}"
     return f"Group {group.value}{sure}, {GROUP_MEANS[str(group.value)]}. {state}."
 
@@ -42,7 +42,7 @@ def _cohesion(rows: dict[str, Row]) -> str:
         "elevated": "test it before it goes into the bed.",
         "high": "hold it: likely to channel and cake.",
     }[str(risk.value)]
-    return f"Cohesion risk {risk.value} (probability {probability:.0%}, {risk.note}): {advice}"
+    return f"Cohesion risk {risk.value} (probability {probability * 100:.0f} %, {risk.note}): {advice}"
 
 
 def _carryover(rows: dict[str, Row]) -> str:
@@ -50,9 +50,9 @@ def _carryover(rows: dict[str, Row]) -> str:
     said = []
     for name, row in (("Carryover", rate), ("loss past the cyclones", loss)):
         if row is not None and row.value is not None:
-            unit, factor = friendly(row.key, row.unit)
-            span = span_of(row.low, row.high, factor)
-            said.append(f"{name} {digits(float(row.value) * factor)} {unit}" + (f" ({span})" if span else ""))
+            unit = friendly(row.key, row.unit)
+            span = span_of(row.low, row.high, unit)
+            said.append(f"{name} {digits(float(row.value) * unit.factor)} {unit.unit}" + (f" ({span})" if span else ""))
     return "; ".join(said) + " with the lot as received in the bed." if said else ""
 
 

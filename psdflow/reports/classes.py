@@ -127,6 +127,10 @@ def _from_ranges(
     for k, (cell, value) in enumerate(zip(cells, values, strict=True)):
         where = sizes.table.where(sizes.rows[k], sizes.columns.first)
         if cell.kind == "below":
+            if k:
+                raise InputError(
+                    f"{where}: this class begins at 0 but finer classes stand beside it; classes must join. Correct its lower edge"
+                )
             below += value
             if cell.high is not None:
                 edges.append(cell.high)

@@ -1,6 +1,5 @@
 """One cell -> a number: decimal comma or point, thousands separators, "<0.1", a unit written in the cell."""
 
-import math
 import re
 from functools import lru_cache
 from collections.abc import Iterable, Sequence
@@ -16,6 +15,7 @@ class Percent(float):
 
 
 Cell = str | float
+SMALLEST, LARGEST = 1e-12, 1e12
 
 # Words for units, in plain form (see `plain`). Every spelling of micro becomes "u" there.
 _UNITS = {
@@ -102,13 +102,11 @@ _FULL = {
 def numeral(cell: Cell, decimal: Decimal) -> Numeral | None:
     """The number in a cell, or None if the cell is not a number with at most a unit behind it."""
     if isinstance(cell, float):
-        if not math.isfinite(cell):
-            return None
-        return Numeral(round(cell * 100, 12), unit="%") if isinstance(cell, Percent) else Numeral(cell)
+        return _bearable(Numeral(round(cell * 100, 12), unit="%") if isinstance(cell, Percent) else Numeral(cell))
     if not cell or len(cell) > 40:
         return None
     if decimal == "." and _PLAIN.fullmatch(cell):
-        return _finite(Numeral(float(cell)))
+        return _bearable(Numeral(float(cell)))
     match = _FULL[decimal].fullmatch(plain(cell))
     if match is None:
         return None
@@ -121,11 +119,12 @@ def numeral(cell: Cell, decimal: Decimal) -> Numeral | None:
     # "1,250" alone may be 1.250 typed the other way round; "1,250.5" and "1,250,000" can't.
     grouped = group in (",", ".") and decimal not in text and match["number"].count(group) == 1
     sign = "" if match["sign"] == "~" else match["sign"]
-    return _finite(Numeral(float(text.replace(decimal, ".")), sign, unit, grouped))
+    return _bearable(Numeral(float(text.replace(decimal, ".")), sign, unit, grouped))
 
 
-def _finite(number: Numeral) -> Numeral | None:
-    return number if math.isfinite(number.value) else None
+def _bearable(number: Numeral) -> Numeral | None:
+    """The number, or None if it can't be on a size report (1e308 is a slip of the keyboard)."""
+    return number if number.value == 0 or SMALLEST <= abs(number.value) <= LARGEST else None
 
 
 _TOKEN = re.compile(r"(?<![\d.,])\d*(?:[.,]\d+)+(?![\d.,])")

@@ -184,14 +184,26 @@ def _inherit_headers(tables: list[Table]) -> None:
 def _no_broken_table(found: list[tuple[Table, Sample]]) -> None:
     """Refuse a table that goes on below a line of text as if it were another sample."""
     for (table, one), (below, two) in zip(found, found[1:], strict=False):
-        if table is below or table.across or below.across or below.title:
+        if table is below or table.across or below.across or one.sizes.has_pan:
             continue
         sizes = [[c.low or c.high or 0.0 for c in s.sizes.cells if c.low or c.high] for s in (one, two)]
-        if sizes[0] and sizes[1] and not one.sizes.has_pan and (max(sizes[1]) < min(sizes[0]) or min(sizes[1]) > max(sizes[0])):
+        finer, coarser = (two, one) if max(sizes[1]) < min(sizes[0]) else (one, two)
+        apart = max(sizes[1]) < min(sizes[0]) or min(sizes[1]) > max(sizes[0])
+        if apart and (not below.title or below.headers == table.headers) and _goes_on(finer, coarser):
             raise InputError(
                 f"{below.where(0)}: these sizes go on from the table above; remove the lines between if it is one table, "
-                "or put the sample's name over each table"
+                "else give each table its own pan row"
             )
+
+
+def _goes_on(finer: Sample, coarser: Sample) -> bool:
+    """Whether two tables can be one: shares in class, or cumulative values that run on from one to the other."""
+    for role in ("under", "over"):
+        if role in finer.quantities and role in coarser.quantities:
+            last = [v for v in finer.quantities[role].values if v is not None]
+            first = [v for v in coarser.quantities[role].values if v is not None]
+            return bool(last and first) and (last[-1] <= first[0] if role == "under" else last[-1] >= first[0])
+    return True
 
 
 def _report(
@@ -206,12 +218,12 @@ def _report(
     many_sheets: bool,
 ) -> Report:
     kind, notes = _kind(layout, table, sample, options, grid)
-    if kind == "sieve" and not sample.sizes.has_pan and set(sample.quantities) <= {"mass", "share"}:
-        for i in stray_rows(table, layout):
-            raise InputError(
-                f"{grid.where(i)}: found {_row_text(grid, i)} under a table without a pan row; if it is the pan, write "
-                '"pan" and move it into the table, else put a # before it'
-            )
+    no_pan = kind == "sieve" and not sample.sizes.has_pan and set(sample.quantities) <= {"mass", "share"}
+    for i in stray_rows(table, layout, decimal, no_pan):
+        raise InputError(
+            f"{grid.where(i)}: found {_row_text(grid, i)} apart from the table; if it is a row of the table (the pan is called "
+            '"pan"), remove what stands between, else put a # before it'
+        )
     charge = _charge(layout, sample, decimal) if kind == "sieve" else None
     readings = [
         sieve_classes(one, options, charge) if kind == "sieve" else laser_classes(one) for one in (sample, *sample.repeats)

@@ -49,7 +49,7 @@ def recognise(table: Table, options: Options, decimal: Decimal) -> list[Sample]:
     taken = {c for unit in units for c in unit.all}
     for columns_of_size in units:
         chosen = read_sizes(table, columns_of_size, decimal, options.size_unit)
-        quantities, unused = [], []
+        quantities, unused, unsure = [], [], []
         for j in columns_of_size.span:
             if j in taken or _is_blank(table, j):
                 continue
@@ -60,12 +60,18 @@ def recognise(table: Table, options: Options, decimal: Decimal) -> list[Sample]:
                 unused.append(j)
                 continue
             quantity = read_quantity(chosen, j, decimal)
-            if quantity is not None:
+            if quantity is not None and (head.text or _mostly_numbers(table, j, decimal, of_all=True)):
                 quantities.append(quantity)
             elif _mostly_numbers(table, j, decimal):
-                unused.append(j)
+                (unsure if head.unit or head.role or head.text else unused).append(j)
         if not quantities:
             _undecided(table, "no column could be recognised as a mass, a share or a cumulative share")
+        for j in unsure:
+            head = heading(table.headers[j])
+            if head.unit or head.role or any(not heading(table.headers[q.column]).unit + heading(table.headers[q.column]).role for q in quantities):
+                _undecided(table, f"{table.column_name(j)} is neither a share that adds up to 100 % nor cumulative")
+            unused.append(j)
+        unused.sort()
         new = _grouped(chosen, quantities)
         if unused:
             names = ", ".join(table.column_name(j) for j in unused[:6])
@@ -79,8 +85,9 @@ def _is_blank(table: Table, column: int) -> bool:
     return all(row[column] == "" for row in table.rows)
 
 
-def _mostly_numbers(table: Table, column: int, decimal: Decimal) -> bool:
-    cells = [row[column] for row in table.rows if row[column] != ""]
+def _mostly_numbers(table: Table, column: int, decimal: Decimal, of_all: bool = False) -> bool:
+    """Whether most filled cells (or, ``of_all``, most cells) of a column are numbers."""
+    cells = [row[column] for row in table.rows if of_all or row[column] != ""]
     return sum(numeral(c, decimal) is not None for c in cells) >= 0.6 * len(cells)
 
 

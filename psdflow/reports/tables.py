@@ -68,6 +68,8 @@ def find_tables(grid: Grid, decimal: Decimal) -> Layout:
             if len(table.rows) >= 2 and len(table.headers) >= 2:
                 tables.append(table)
                 used.update(range(i, end))
+            else:
+                used.difference_update(range(i, end))
             i = end
         else:
             i += 1
@@ -171,23 +173,22 @@ def _standing_table(grid: Grid, start: int, kinds: list[str], used: set[int], de
 
 
 def _numbered_header(grid: Grid, body: list[int], decimal: Decimal) -> bool:
-    label = next((c for c in grid.rows[body[0]] if c != ""), "")
+    """Whether the first row is a header such as "size;1;2;3": a size word, then numbers over filled columns."""
+    row = grid.rows[body[0]]
+    label = next((c for c in row if c != ""), "")
     is_label = isinstance(label, str) and size_of(label, decimal) is None and heading(label).size
-    return is_label and _starts_with_size(grid, body[1], decimal)
+    if not is_label or not _starts_with_size(grid, body[1], decimal):
+        return False
+    return all(cell == "" or (j < len(grid.rows[body[1]]) and grid.rows[body[1]][j] != "") for j, cell in enumerate(row))
 
 
 def _no_overhang(grid: Grid, headers: list[str], body: list[int], decimal: Decimal) -> None:
-    """Refuse rows with more numbers than headers in comma-separated text: decimal commas were split there."""
+    """Refuse rows with more numbers than headers: decimal commas were split there, or two lines became one."""
     headed = max((j + 1 for j, header in enumerate(headers) if header), default=0)
-    if grid.separator != "," or not headed:
-        return
-    for i in body:
-        over = [cell for cell in grid.rows[i][headed:] if numeral(cell, decimal)]
-        if over:
-            raise InputError(
-                f"{grid.where(i)}: more numbers than the {headed} columns of the header; if they have decimal commas, "
-                "separate the columns with semicolons or tabs"
-            )
+    over = [i for i in body if headed < len(grid.rows[i]) and numeral(grid.rows[i][headed], decimal)]
+    if headed and over and (grid.separator == "," or len(over) < 0.6 * len(body)):
+        comma = "; if they have decimal commas, separate the columns with semicolons or tabs" if grid.separator == "," else ""
+        raise InputError(f"{grid.where(over[0])}: more numbers than the {headed} columns of the header; one row a line is expected{comma}")
 
 
 def _starts_with_size(grid: Grid, row: int, decimal: Decimal) -> bool:
@@ -335,17 +336,20 @@ def _text(cell: Cell) -> str:
     return f"{cell:.10g}" if isinstance(cell, float) else " ".join(cell.split())
 
 
-def stray_rows(table: Table, layout: Layout) -> list[int]:
-    """Rows just under a standing table, after a gap, that hold a word nobody knows and one number."""
+def stray_rows(table: Table, layout: Layout, decimal: Decimal, no_pan: bool) -> list[int]:
+    """Rows apart from any table that may belong to this one: a size and a number, or a word nobody knows and a number."""
     if table.across:
         return []
-    last = table.place[-1]
-    found = []
-    for i in range(last + 1, min(last + 4, len(table.grid.rows))):
-        filled = [c for c in table.grid.rows[i] if c != ""]
+    rows, found = table.grid.rows, []
+    for i in layout.unclaimed:
+        above = [plain(str(c)) for c in rows[i - 1] if c != ""] if i else []
+        if _starts_with_size(table.grid, i, decimal) and not (above and all(STATISTIC.fullmatch(c) for c in above)):
+            found.append(i)
+    for i in range(table.place[-1] + 1, min(table.place[-1] + 4, len(rows))):
+        filled = [c for c in rows[i] if c != ""]
         label = plain(str(filled[0])).strip(" :") if filled else ""
         known = any(p.search(label) for p in (LOT, SAMPLE, NAMES)) or is_footer(label) or str(filled[:1]).count(":")
-        if layout.kinds[i] == "single" and len(filled) == 2 and not known:
+        if no_pan and layout.kinds[i] == "single" and len(filled) == 2 and not known:
             found.append(i)
     return found
 
