@@ -60,14 +60,15 @@ def read(files: tuple[Path, ...], out: Path | None, **how: str | None) -> None:
     from rich.console import Console
 
     from psdflow.present.reading import understood
-    from psdflow.present.sheet import replacing, safe_name
+    from psdflow.present.sheet import file_stems, replacing
     from psdflow.reports import canonical_text
 
     console = Console(highlight=False)
-    for report in _reports(files, how):
+    reports = _reports(files, how)
+    for report, stem in zip(reports, file_stems([report.lot for report in reports]), strict=True):
         console.print(understood(report))
         if out is not None:
-            with replacing(out / f"{safe_name(report.lot)}.csv") as file:
+            with replacing(out / f"{stem}.csv") as file:
                 file.write(canonical_text(report))
 
 
@@ -139,8 +140,8 @@ def _present(subjects: "list[Subject]", out: Path | None, json_to: str | None, f
     if out is not None:
         from psdflow.present.figures import distribution_figure, save, velocity_figure
 
-        for subject in subjects:
-            stem = sheet.safe_name(subject.name)
+        stems = sheet.file_stems([subject.name for subject in subjects])
+        for subject, stem in zip(subjects, stems, strict=True):
             sheet.write_csv(subject, out / f"{stem}-sheet.csv")
             for name, draw in (("distribution", distribution_figure), ("velocities", velocity_figure)):
                 figure = draw(subject.assessment, subject.lot)

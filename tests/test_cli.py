@@ -111,6 +111,13 @@ def test_out_folder(tmp_path):
     assert (tmp_path / "o" / "BW-0412-velocities.png").read_bytes().startswith(b"\x89PNG")
 
 
+def test_two_lots_of_one_name_get_two_sheets(tmp_path):
+    copy = tmp_path / "again.csv"
+    copy.write_text(Path(REPORT).read_text(encoding="utf-8"), encoding="utf-8")
+    run("assess", REPORT, str(copy), *CARRIER, "--out", str(tmp_path / "o"), "--draws", "10")
+    assert {path.name for path in (tmp_path / "o").glob("*.csv")} == {"BW-0412-sheet.csv", "BW-0412-2-sheet.csv"}
+
+
 def test_the_same_bytes_twice(tmp_path):
     for name in ("a", "b"):
         run("assess", REPORT, *CARRIER, "--out", str(tmp_path / name))

@@ -90,9 +90,17 @@ def replacing(path: Path, mode: str = "w") -> Iterator[IO[Any]]:
             os.unlink(temporary)
 
 
-def safe_name(lot: str) -> str:
-    """A lot's name as a file name: letters, digits, dot, dash and underscore of any script, at most 80."""
-    return re.sub(r"[^\w.-]+", "_", lot).strip("._")[:80] or "lot"
+def file_stems(lots: Sequence[str]) -> list[str]:
+    """A file name for each lot, none twice: letters, digits, dot, dash and underscore of any script, at most 80."""
+    stems: list[str] = []
+    for lot in lots:
+        plain = re.sub(r"[^\w.-]+", "_", lot).strip("._")[:80] or "lot"
+        stem, number = plain, 1
+        while stem.casefold() in {other.casefold() for other in stems}:
+            number += 1
+            stem = f"{plain}-{number}"
+        stems.append(stem)
+    return stems
 
 
 def write_csv(subject: Subject, path: Path) -> None:
