@@ -38,7 +38,11 @@ def _reading_options(command: Callable[..., None]) -> Callable[..., None]:
         click.option("--basis", type=click.Choice(["mass", "volume", "number", "area"]), help="What was counted."),
         click.option("--decimal", type=click.Choice([".", ","]), help="Decimal sign of the numbers."),
         click.option("--sample", help="Read only the sample of this name."),
-        click.option("--size-unit", type=click.Choice(["um", "mm", "nm", "m", "in"]), help="Unit of the sizes."),
+        click.option(
+            "--size-unit",
+            type=click.Choice(["um", "mm", "nm", "cm", "m", "in", "phi", "astm"]),
+            help="Unit of the sizes.",
+        ),
     ):
         command = option(command)
     return command
