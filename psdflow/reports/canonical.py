@@ -61,7 +61,9 @@ def read_canonical(data: bytes, source: str) -> list[Report]:
         raise InputError(f"{source}: the canonical table is damaged; write it anew with psdflow read --out") from None
     starts = [i for i, row in enumerate(rows) if row and ",".join(row).strip() == FIRST_LINE]
     if not starts or starts[0] != 0:
-        raise InputError(f"{source}: the first line is not {FIRST_LINE!r}; write the table anew with psdflow read --out")
+        raise InputError(
+            f"{source}: the first line is not {FIRST_LINE!r}; write the table anew with psdflow read --out"
+        )
     return [_report(rows[a:b], a, source) for a, b in zip(starts, [*starts[1:], len(rows)], strict=True)]
 
 
@@ -111,9 +113,14 @@ def _checked(
 ) -> Report:
     missing = [key for key in _PLAIN if key not in plain]
     if missing or len(table) < 3:
-        raise InputError(f"{where}: the canonical table lacks {', '.join(missing) or 'its classes'}; write it anew with psdflow read --out")
+        raise InputError(
+            f"{where}: the canonical table lacks {', '.join(missing) or 'its classes'}; write it anew with psdflow read --out"
+        )
     if plain["kind"] not in get_args(KindOfReport) or plain["quantity"] not in get_args(Quantity):
-        raise InputError(f"{where}: kind {shown(plain['kind'])} or quantity {shown(plain['quantity'])} is unknown; sieve or laser and mass, volume, number or area are expected")
+        raise InputError(
+            f"{where}: kind {shown(plain['kind'])} or quantity {shown(plain['quantity'])} is unknown; "
+            "sieve or laser and mass, volume, number or area are expected"
+        )
     numbers = np.array(table)
     edges = numbers[1:, 0]
     joined = np.isnan(numbers[0, 0]) and np.isnan(numbers[-1, 1]) and np.array_equal(numbers[:-1, 1], edges)

@@ -6,40 +6,13 @@ from typing import NoReturn
 import numpy as np
 
 from psdflow.errors import InputError, shown
-from psdflow.reports.apertures import ASTM_NUMBERS, Size, in_metres, size_of
-from psdflow.reports.numerals import LENGTHS, Cell, Decimal, plain
-from psdflow.reports.tables import Table, is_footer
-from psdflow.reports.words import Heading, heading
+from psdflow.reports.apertures import Size, in_metres, size_of
+from psdflow.reports.layout import SizeColumns, Table, is_footer
+from psdflow.reports.numerals import Cell, Decimal, plain
+from psdflow.reports.size_units import UNIT_NAMES, unit_of
+from psdflow.reports.words import heading
 
-_UNIT_NAMES = {"um": "µm", "astm": "ASTM E11 number", "in": "inch"}
 _ENDLESS = ("", "-", "inf", "infinity", "∞", "max", "none")
-MICROMETRES_FROM = 20.0  # a size column without a unit is in µm if it goes at least this far: 20 mm is no powder
-
-
-@dataclass
-class SizeColumns:
-    """Columns of a table that hold sizes: one of ``size`` or ``mid``, or ``lower`` and/or ``upper``."""
-
-    size: int | None = None
-    lower: int | None = None
-    upper: int | None = None
-    mid: int | None = None
-    span: range = range(0)  # the columns of the file these sizes rule; empty: all
-
-    @property
-    def all(self) -> list[int]:
-        """The columns in use."""
-        return [c for c in (self.size, self.lower, self.upper, self.mid) if c is not None]
-
-    @property
-    def first(self) -> int:
-        """The column a message names."""
-        return self.all[0]
-
-    @property
-    def pair(self) -> bool:
-        """Whether lower and upper edges stand in two columns."""
-        return self.lower is not None and self.upper is not None
 
 
 @dataclass
@@ -70,7 +43,7 @@ class Sizes:
         """Columns and unit in words."""
         names = [self.table.column_name(c) for c in self.columns.all]
         edge = {"upper": "upper edge, ", "lower": "lower edge, ", "mid": "class middle, "}.get(self.edge, "")
-        return f"{' and '.join(names)} ({edge}{_UNIT_NAMES.get(self.unit, self.unit)})"
+        return f"{' and '.join(names)} ({edge}{UNIT_NAMES.get(self.unit, self.unit)})"
 
 
 def read_sizes(table: Table, columns: SizeColumns, decimal: Decimal, size_unit: str | None) -> Sizes:
@@ -99,7 +72,7 @@ def read_sizes(table: Table, columns: SizeColumns, decimal: Decimal, size_unit: 
             footers.append((i, is_footer(_label(own)) or "unknown"))
     if len(raw) < 2:
         _fail_few(table, columns, len(raw))
-    unit, notes = _unit(table, columns, [size for _, size in raw], size_unit)
+    unit, notes = unit_of(table, columns, [size for _, size in raw], size_unit)
     _no_unknown_rows(table, columns, footers, raw)
     if any(s.grouped for _, s in raw) and any(not float(s.low or s.high or 0.0).is_integer() for _, s in raw):
         i = next(i for i, s in raw if s.grouped)
@@ -160,53 +133,15 @@ def _no_unknown_rows(
 ) -> None:
     first, last = raw[0][0], raw[-1][0]
     for i, kind in footers:
-        inside = first < i < last
-        if kind == "unknown" or (inside and kind == "unlabelled"):
+        if kind == "unknown" or first < i < last or (kind == "unlabelled" and i < last):
             cell = table.rows[i][columns.first]
-            found = shown(cell) if cell != "" else (shown(_label(table.rows[i])) if _label(table.rows[i]) else "nothing")
+            found = (
+                shown(cell) if cell != "" else (shown(_label(table.rows[i])) if _label(table.rows[i]) else "nothing")
+            )
             raise InputError(
                 f"{table.where(i, columns.first)}: size is {found}; expected a number, a class such as 45-63, "
                 "or the pan. Correct it, or mark the row as a comment with #."
             )
-
-
-def _unit(table: Table, columns: SizeColumns, sizes: list[Size], size_unit: str | None) -> tuple[str, list[str]]:
-    headings = [heading(table.headers[c]) for c in columns.all]
-    header_unit = next((h.unit for h in headings if h.unit in LENGTHS), "")
-    bare = [s for s in sizes if not s.unit and (s.low or s.high)]
-    cell_units = {s.unit for s in sizes if s.unit}
-    if size_unit:
-        return size_unit, []
-    if "mesh" in cell_units:
-        if any("astm" in h.text or "us " in h.text or "u.s." in h.text for h in headings):
-            return "astm", []
-        raise InputError(
-            f"{table.where(0, columns.first)}: sizes are mesh numbers, which mean other apertures in each series; "
-            "give apertures, or say --size-unit astm if they are ASTM E11 numbers"
-        )
-    if header_unit:
-        return header_unit, []
-    if not bare:
-        return next(iter(cell_units), "um"), []
-    if any(_astm_heading(h) for h in headings):
-        if all(s.low is None or s.low in (0, 3.5) or f"{s.low:g}" in ASTM_NUMBERS for s in bare):
-            return "astm", []
-    elif len(cell_units) == 1 and len(bare) < len(sizes) / 2:
-        return next(iter(cell_units)), []
-    largest = max(max(s.low or 0.0, s.high or 0.0) for s in bare)
-    numbered = any(w in h.text.replace(".", " ").split() for h in headings for w in ("no", "nr", "mesh", "number", "nummer", "#"))
-    if largest >= MICROMETRES_FROM and not numbered and not any(_astm_heading(h) for h in headings):
-        return "um", [
-            f"{table.column_name(columns.first)} has no unit; µm was assumed, since {largest:g} mm would be no powder"
-        ]
-    raise InputError(
-        f"{table.where(0, columns.first)}: {table.column_name(columns.first)} has no unit (sizes up to {largest:g}); "
-        'write it into the header, like "size (µm)", or say --size-unit um, mm, nm or astm'
-    )
-
-
-def _astm_heading(h: Heading) -> bool:
-    return "astm" in h.text or h.text.startswith(("us ", "u.s."))
 
 
 def _converted(table: Table, row: int, column: int, size: Size, unit: str) -> Size:
@@ -229,7 +164,7 @@ def _converted(table: Table, row: int, column: int, size: Size, unit: str) -> Si
             raise InputError(f"{table.where(row, column)}: {error}; give the aperture in µm or mm") from None
         if not 0 <= metres < 10 or (metres < 1e-10 and value != 0):
             raise InputError(
-                f"{table.where(row, column)}: size {value:g} {_UNIT_NAMES.get(use, use)} is no particle size; "
+                f"{table.where(row, column)}: size {value:g} {UNIT_NAMES.get(use, use)} is no particle size; "
                 "check the number and its unit"
             )
         values.append(metres)
@@ -266,7 +201,9 @@ def _ordered(table: Table, columns: SizeColumns, sizes: list[tuple[int, Size]]) 
     named = [(i, s) for i, s in sizes if s.kind != "below" or s.high is not None]
     inner = [(i, s) for i, s in named if not (s.kind == "edge" and s.low == 0)]
     if len(named) - len(inner) + len(pans) > 1:
-        raise InputError(f"{table.where(pans[0][0] if pans else sizes[-1][0], column)}: two rows for the pan; one is expected")
+        raise InputError(
+            f"{table.where(pans[0][0] if pans else sizes[-1][0], column)}: two rows for the pan; one is expected"
+        )
     zero = [pair for pair in named if pair not in inner]
     if not inner:
         raise InputError(f"{table.where(0, column)}: no size in {table.column_name(column)}; sizes over 0 are expected")
@@ -274,11 +211,18 @@ def _ordered(table: Table, columns: SizeColumns, sizes: list[tuple[int, Size]]) 
     rising = positions[-1] > positions[0]
     for (i, _), before, here in zip(inner[1:], positions, positions[1:], strict=False):
         if abs(here - before) <= 1e-12 * abs(before):
-            raise InputError(f"{table.where(i, column)}: size {shown(table.rows[i][column])} stands twice; each size once is expected")
+            raise InputError(
+                f"{table.where(i, column)}: size {shown(table.rows[i][column])} stands twice; each size once is expected"
+            )
         if (here > before) != rising:
             raise InputError(
                 f"{table.where(i, column)}: size {shown(table.rows[i][column])} is out of order; sizes must {'rise' if rising else 'fall'} "
                 "from row to row. Correct the size, or mark the row as a comment with #."
+            )
+    for i, _ in pans:
+        if i != sizes[-1][0] and not (rising and i == sizes[0][0]):
+            raise InputError(
+                f"{table.where(i, column)}: the pan row stands among the sizes; it belongs at the end, after the finest sieve"
             )
     _doubtful_signs(table, column, inner)
     ordered = inner if rising else inner[::-1]
@@ -286,7 +230,7 @@ def _ordered(table: Table, columns: SizeColumns, sizes: list[tuple[int, Size]]) 
 
 
 def _doubtful_signs(table: Table, column: int, sizes: list[tuple[int, Size]]) -> None:
-    """"-38" is the class under 38 if 38 is the finest sieve, or if others are written "-63+45"."""
+    """ "-38" is the class under 38 if 38 is the finest sieve, or if others are written "-63+45"."""
     written_so = any(s.kind in ("class", "above") for _, s in sizes)
     finest = min((s.low for _, s in sizes if s.kind in ("edge", "above") and s.low), default=None)
     for i, size in sizes:
@@ -308,4 +252,3 @@ def looks_like_sizes(table: Table, column: int, decimal: Decimal) -> tuple[bool,
     strict = bool(np.all(steps > 0) or np.all(steps < 0))
     explicit = sum(bool(s.unit) or s.kind != "edge" for s in sizes) >= max(1, 0.6 * len(sizes))
     return mostly, strict, explicit
-

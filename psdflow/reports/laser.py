@@ -3,9 +3,10 @@
 import numpy as np
 
 from psdflow.errors import InputError
-from psdflow.reports.classes import Classes, cumulative, from_middles, in_class
+from psdflow.reports.classes import Classes, from_middles, in_class
+from psdflow.reports.cumulative import cumulative
 from psdflow.reports.quantities import Quantity
-from psdflow.reports.recognise import Sample
+from psdflow.reports.samples import Sample
 from psdflow.reports.sieve import compare, stated_total
 
 
@@ -68,4 +69,6 @@ def _joined_pairs(sample: Sample, quantity: Quantity, classes: Classes) -> None:
     """Cumulative beside lower and upper edges: finer belongs to the upper, coarser to the lower edge; say so."""
     if sample.sizes.columns.pair:
         edge = "upper" if quantity.role == "under" else "lower"
-        classes.warnings.append(f"{quantity.table.column_name(quantity.column)} was taken to belong to the {edge} edge of each class")
+        classes.warnings.append(
+            f"{quantity.table.column_name(quantity.column)} was taken to belong to the {edge} edge of each class"
+        )

@@ -1,8 +1,8 @@
 """One cell -> a number: decimal comma or point, thousands separators, "<0.1", a unit written in the cell."""
 
 import re
-from functools import lru_cache
 from collections.abc import Iterable, Sequence
+from functools import lru_cache
 from typing import Literal, NamedTuple
 
 from psdflow.errors import InputError, shown
@@ -111,7 +111,7 @@ def numeral(cell: Cell, decimal: Decimal) -> Numeral | None:
     if match is None:
         return None
     text, group = match["number"].replace(" ", ""), match["group"]
-    unit = UNITS.get((match["unit"] or "").strip(" []()"), None) if match["unit"] else ""
+    unit = UNITS.get((match["unit"] or "").strip(" []()")) if match["unit"] else ""
     if unit is None or (group and text.lstrip("+-").startswith("0")):
         return None
     if group:

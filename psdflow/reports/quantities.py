@@ -6,8 +6,8 @@ import numpy as np
 
 from psdflow.errors import InputError, shown
 from psdflow.reports.edges import Sizes
+from psdflow.reports.layout import Table, not_detected
 from psdflow.reports.numerals import MASSES, Decimal, Numeral, grouped_beside_decimals, numeral
-from psdflow.reports.tables import Table, not_detected
 from psdflow.reports.words import Heading, heading
 
 TOTAL_WARN = 0.005  # how far a total may be from 100 % before it is said …
@@ -50,7 +50,14 @@ class Quantity:
         return self.table.where(sizes.rows[index], self.column)
 
 
-_WORD = {"mass": "mass", "share": "share", "under": "cumulative share", "over": "cumulative share", "gross": "gross mass", "tare": "empty mass"}
+_WORD = {
+    "mass": "mass",
+    "share": "share",
+    "under": "cumulative share",
+    "over": "cumulative share",
+    "gross": "gross mass",
+    "tare": "empty mass",
+}
 
 
 def read_quantity(sizes: Sizes, column: int, decimal: Decimal, role: str | None = None) -> Quantity | None:
@@ -127,7 +134,9 @@ def _scale(numbers: list[Numeral | None], unit: str) -> float:
     return 1.0 if max(values) <= 1.005 and sum(values) > 0 else 100.0
 
 
-def _values(quantity: Quantity, sizes: Sizes, cells: list[str | float], numbers: list[Numeral | None]) -> list[float | None]:
+def _values(
+    quantity: Quantity, sizes: Sizes, cells: list[str | float], numbers: list[Numeral | None]
+) -> list[float | None]:
     word = _WORD[quantity.role]
     if grouped_beside_decimals(numbers):
         k = next(k for k, n in enumerate(numbers) if n is not None and n.grouped)
@@ -136,6 +145,9 @@ def _values(quantity: Quantity, sizes: Sizes, cells: list[str | float], numbers:
         )
     values: list[float | None] = []
     for k, (cell, number) in enumerate(zip(cells, numbers, strict=True)):
+        if number is not None and not number.sign and not number.unit and number.value >= 0:
+            values.append(number.value)
+            continue
         where = quantity.where(sizes, k)
         if number is None:
             values.append(_no_number(quantity, where, word, cell))
@@ -146,7 +158,11 @@ def _values(quantity: Quantity, sizes: Sizes, cells: list[str | float], numbers:
                 f"Check the {'sign' if number.value < 0 else 'number'}, or mark the row as a comment with #."
             )
         value = number.value
-        if number.unit and number.unit in MASSES:
+        if number.unit and quantity.unit and (number.unit in MASSES) != (quantity.unit in MASSES):
+            raise InputError(
+                f"{where}: {word} is {shown(cell)} in a column in {quantity.unit}; the same unit is expected"
+            )
+        if number.unit in MASSES:
             value *= _MASS_IN_GRAMS[number.unit] / _MASS_IN_GRAMS.get(quantity.unit, 1.0)
         elif number.unit and number.unit != "%":
             raise InputError(f"{where}: {word} is {shown(cell)}; a {word} with the unit {number.unit} is not expected")
@@ -186,5 +202,11 @@ def _check_scale(quantity: Quantity) -> None:
             f"{where} is headed as a fraction but {'adds up' if quantity.role == 'share' else 'goes up'} to {everything:.4g}; "
             "write fractions, or head the column with %"
         )
-    if quantity.unit == "" and quantity.scale == 1.0 and quantity.role == "share" and everything < 0.9 and len(known) > 1:
+    if (
+        quantity.unit == ""
+        and quantity.scale == 1.0
+        and quantity.role == "share"
+        and everything < 0.9
+        and len(known) > 1
+    ):
         raise InputError(f"{where} adds up to {everything:.4g}; 100 (percent) or 1 (fractions) is expected")

@@ -2,6 +2,7 @@
 
 from collections.abc import Callable, Iterable
 from dataclasses import replace
+from itertools import pairwise
 from pathlib import Path
 from typing import Literal, cast, get_args
 
@@ -9,21 +10,22 @@ import numpy as np
 
 from psdflow.distribution import Quantity as Basis
 from psdflow.errors import InputError, shown
-from psdflow.reports.apertures import nominal
-from psdflow.reports.cells import Grid, read_bytes, read_grids
-from psdflow.reports.classes import Classes, averaged
+from psdflow.reports.around import stray_rows
 from psdflow.reports.canonical import is_canonical, read_canonical
+from psdflow.reports.cells import Grid, read_bytes, read_grids
+from psdflow.reports.classes import averaged
 from psdflow.reports.laser import laser_classes
-from psdflow.reports.numerals import LENGTHS, MASSES, Decimal, decimal_of, numeral, plain
-from psdflow.reports.recognise import Sample, only_percentiles, recognise, strip_word
+from psdflow.reports.layout import Layout, Table
+from psdflow.reports.meaning import basis_note, basis_of, charge_of, kind_of, names_of
+from psdflow.reports.numerals import LENGTHS, Decimal, decimal_of, plain
+from psdflow.reports.recognise import only_percentiles, recognise
 from psdflow.reports.report import KindOfReport, Options, Report
+from psdflow.reports.samples import Sample
 from psdflow.reports.sieve import sieve_classes
-from psdflow.reports.tables import Layout, Table, find_tables, stray_rows
-from psdflow.reports.words import BASIS, INPUT_MASS, LASER, LOT, SAMPLE, SIEVE, STATISTIC
+from psdflow.reports.tables import find_tables
+from psdflow.reports.words import STATISTIC
 
 SUFFIXES = (".csv", ".txt", ".tsv", ".dat", ".asc", ".xlsx", ".xlsm")
-_MANY_CLASSES = 25  # more sizes than a stack of sieves has
-_GRAMS = {"mg": 1e-3, "g": 1.0, "kg": 1e3}
 
 
 def read(
@@ -97,7 +99,9 @@ def read_folder(
     place = Path(folder)
     if not place.is_dir():
         raise InputError(f"{place}: is no folder; a folder of size reports is expected")
-    files = sorted(p for p in place.iterdir() if p.suffix.lower() in (*SUFFIXES, ".xls") and not p.name.startswith((".", "~$")))
+    files = sorted(
+        p for p in place.iterdir() if p.suffix.lower() in (*SUFFIXES, ".xls") and not p.name.startswith((".", "~$"))
+    )
     if not files:
         raise InputError(f"{place}: holds no size report ({', '.join(SUFFIXES)})")
     reports: list[Report] = []
@@ -154,8 +158,10 @@ def _read_grids(grids: Iterable[Grid], source: str, options: Options) -> list[Re
     reports: list[Report] = []
     percentiles = False
     for grid, decimal, layout in layouts:
-        tables = [t for t in layout.tables if options.columns or not only_percentiles(t)]
-        percentiles |= len(tables) < len(layout.tables) or sum(bool(STATISTIC.fullmatch(plain(k))) for k in layout.fields) > 1
+        tables = [t for t in layout.tables if options.columns or not only_percentiles(t, decimal)]
+        percentiles |= (
+            len(tables) < len(layout.tables) or sum(bool(STATISTIC.fullmatch(plain(k))) for k in layout.fields) > 1
+        )
         _inherit_headers(tables)
         found: list[tuple[Table, Sample]] = [(t, s) for t in tables for s in recognise(t, options, decimal)]
         _no_broken_table(found)
@@ -163,9 +169,15 @@ def _read_grids(grids: Iterable[Grid], source: str, options: Options) -> list[Re
         layout.titles += shared_titles
         many_sheets = sum(bool(other.tables) for _, _, other in layouts) > 1
         for table, sample in found:
-            reports.append(_report(grid, layout, table, sample, decimal, options, alone=len(found) == 1, many_sheets=many_sheets))
+            reports.append(
+                _report(grid, layout, table, sample, decimal, options, alone=len(found) == 1, many_sheets=many_sheets)
+            )
     if not reports:
-        what = "only percentiles and means were found, no classes" if percentiles else "no table of sizes and shares was found"
+        what = (
+            "only percentiles and means were found, no classes"
+            if percentiles
+            else "no table of sizes and shares was found"
+        )
         raise InputError(
             f"{source}: {what}; a column of sizes and a column of masses, shares or cumulative shares are expected, "
             "under a header that names them with units"
@@ -175,7 +187,7 @@ def _read_grids(grids: Iterable[Grid], source: str, options: Options) -> list[Re
 
 def _inherit_headers(tables: list[Table]) -> None:
     """A further block without headers of its own has those of the block above, if it is as wide."""
-    for before, table in zip(tables, tables[1:], strict=False):
+    for before, table in pairwise(tables):
         wordless = not any(table.headers)
         if wordless and not table.across and not before.across and len(before.headers) == len(table.headers):
             table.headers = list(before.headers)
@@ -183,12 +195,12 @@ def _inherit_headers(tables: list[Table]) -> None:
 
 def _no_broken_table(found: list[tuple[Table, Sample]]) -> None:
     """Refuse a table that goes on below a line of text as if it were another sample."""
-    for (table, one), (below, two) in zip(found, found[1:], strict=False):
+    for (table, one), (below, two) in pairwise(found):
         if table is below or table.across or below.across or one.sizes.has_pan:
             continue
         sizes = [[c.low or c.high or 0.0 for c in s.sizes.cells if c.low or c.high] for s in (one, two)]
-        finer, coarser = (two, one) if max(sizes[1]) < min(sizes[0]) else (one, two)
-        apart = max(sizes[1]) < min(sizes[0]) or min(sizes[1]) > max(sizes[0])
+        finer, coarser = (two, one) if max(sizes[1]) <= min(sizes[0]) else (one, two)
+        apart = max(sizes[1]) <= min(sizes[0]) or min(sizes[1]) >= max(sizes[0])
         if apart and (not below.title or below.headers == table.headers) and _goes_on(finer, coarser):
             raise InputError(
                 f"{below.where(0)}: these sizes go on from the table above; remove the lines between if it is one table, "
@@ -217,27 +229,29 @@ def _report(
     alone: bool,
     many_sheets: bool,
 ) -> Report:
-    kind, notes = _kind(layout, table, sample, options, grid)
+    kind, notes = kind_of(layout, table, sample, options, grid)
     no_pan = kind == "sieve" and not sample.sizes.has_pan and set(sample.quantities) <= {"mass", "share"}
     for i in stray_rows(table, layout, decimal, no_pan):
         raise InputError(
             f"{grid.where(i)}: found {_row_text(grid, i)} apart from the table; if it is a row of the table (the pan is called "
             '"pan"), remove what stands between, else put a # before it'
         )
-    charge = _charge(layout, sample, decimal) if kind == "sieve" else None
+    charge = charge_of(layout, sample, decimal) if kind == "sieve" else None
     readings = [
-        sieve_classes(one, options, charge) if kind == "sieve" else laser_classes(one) for one in (sample, *sample.repeats)
+        sieve_classes(one, options, charge) if kind == "sieve" else laser_classes(one)
+        for one in (sample, *sample.repeats)
     ]
     quantity = readings[0][1]
     classes, repeats = averaged([one for one, _ in readings], grid.name)
-    basis = options.basis or _basis(kind, layout, table, sample)
+    basis = options.basis or basis_of(kind, layout, table, sample)
     warnings = [*grid.notes, *notes, *sample.sizes.notes, *sample.notes, *classes.warnings]
     for reading in (sample, *sample.repeats):
         for column in reading.quantities.values():
             warnings += [note for note in column.notes if note not in warnings]
-    warnings += _basis_note(basis, classes)
-    warnings += [f"row {grid.numbers[i]} was not used: {_row_text(grid, i)}" for i in layout.unclaimed[:5]]
-    name, lot = _names(grid, layout, table, sample, alone, many_sheets)
+    warnings += basis_note(basis, classes)
+    start = table.lines[0] if table.across else table.place[0]
+    warnings += [f"row {grid.numbers[i]} was not used: {_row_text(grid, i)}" for i in layout.unclaimed[:9] if i > start]
+    name, lot = names_of(grid, layout, table, sample, alone, many_sheets)
     understood = {"kind": kind, "quantity": basis, "size": sample.sizes.described}
     understood |= {role: q.described for role, q in sample.quantities.items()}
     understood |= {"used": quantity.described, "decimal": "comma" if decimal == "," else "point"}
@@ -260,109 +274,6 @@ def _report(
     )
 
 
-def _kind(layout: Layout, table: Table, sample: Sample, options: Options, grid: Grid) -> tuple[KindOfReport, list[str]]:
-    """Sieve or laser: from the user, the headers, the table, the text around, the sizes; in this order."""
-    if options.kind:
-        return options.kind, []
-    headers = plain(" | ".join(table.headers))
-    in_mass = any(q.role == "mass" and q.unit in MASSES for q in sample.quantities.values())
-    sieve_table = bool(SIEVE.search(headers)) or in_mass or sample.sizes.unit == "astm"
-    laser_table = bool(LASER.search(headers))
-    if sieve_table != laser_table:
-        return ("sieve" if sieve_table else "laser"), []
-    around = plain(" | ".join([*layout.titles, *layout.fields, *layout.fields.values(), grid.sheet or "", table.title]))
-    sieve_text, laser_text = bool(SIEVE.search(around)), bool(LASER.search(around))
-    if sieve_text != laser_text:
-        return ("sieve" if sieve_text else "laser"), []
-    if any(c.kind == "below" and c.high is None for c in sample.sizes.cells):
-        return "sieve", []
-    edges = [c.low or c.high or 0.0 for c in sample.sizes.cells]
-    on_sieves = np.mean([nominal(e) is not None for e in edges if e > 0]) > 0.9
-    plain_shares = set(sample.quantities) <= {"share", "mass"} and sample.sizes.only_edges and not sample.sizes.edge
-    guess: KindOfReport = "sieve" if on_sieves and len(edges) <= _MANY_CLASSES else "laser"
-    if (guess == "sieve" and plain_shares) or (plain_shares and len(edges) <= _MANY_CLASSES):
-        raise InputError(
-            f"{grid.name}: nothing says whether {sample.sizes.table.column_name(sample.sizes.columns.first)} holds sieves (each share lies above its size) "
-            "or upper edges of classes (each share lies below); say --kind sieve or --kind laser"
-        )
-    return guess, [f"nothing says how the sizes were measured; {guess} was assumed from the sizes"]
-
-
-def _basis(kind: KindOfReport, layout: Layout, table: Table, sample: Sample) -> Basis:
-    if kind == "sieve":
-        return "mass"
-    columns = [plain(table.headers[q.column]) for q in sample.quantities.values()]
-    around = [plain(f"{k} {v}") for k, v in layout.fields.items() if any(w in plain(k) for w in ("basis", "distribution", "verteilung", "weight", "quantity"))]
-    for text in [*columns, *around, *(plain(t) for t in layout.titles)]:
-        for name in ("number", "area", "volume"):
-            if BASIS[name].search(text):
-                return name
-    if any(q.unit in MASSES or BASIS["mass"].search(plain(table.headers[q.column])) for q in sample.quantities.values()):
-        return "mass"
-    return "volume"
-
-
-def _basis_note(basis: Basis, classes: Classes) -> list[str]:
-    """How much converting to volume amplifies an error of the coarse end against the fine one."""
-    if basis not in ("number", "area"):
-        return []
-    held = classes.edges[np.flatnonzero(classes.shares > 0)] if np.any(classes.shares > 0) else classes.edges
-    power = 3 if basis == "number" else 1
-    factor = float((held.max() / held.min()) ** power)
-    return [
-        f"{basis} shares are converted to volume (size to the power {power}): an error in the coarsest class counts "
-        f"{factor:.3g} times what it counts in the finest; a volume or mass basis is better"
-    ]
-
-
-def _charge(layout: Layout, sample: Sample, decimal: Decimal) -> float | None:
-    """Mass weighed in, in the unit of the mass column, from a field or a row under the table."""
-    quantity = next((q for q in sample.quantities.values() if q.unit in MASSES or q.role == "mass"), None)
-    if quantity is None:
-        return None
-    for row, kind in sample.sizes.footers:
-        number = numeral(sample.sizes.table.rows[row][quantity.column], decimal) if kind == "input" else None
-        if number is not None:
-            return number.value * _GRAMS.get(number.unit or quantity.unit, 1.0) / _GRAMS.get(quantity.unit, 1.0)
-    for key, value in layout.fields.items():
-        name, unit = plain(key), ""
-        if "[" in name or "(" in name:
-            name, _, unit = name.replace("[", "(").partition("(")
-        name, unit = name.strip(), unit.strip("]) ")
-        match = INPUT_MASS.match(name)
-        number = numeral(value.strip(), decimal) or (numeral(" ".join(value.split()[:2]), decimal) if value.split() else None)
-        if match and number and match.end() == len(name) and (number.unit in MASSES or unit in MASSES or name != "charge"):
-            return number.value * _GRAMS.get(number.unit or unit or quantity.unit, 1.0) / _GRAMS.get(quantity.unit or "g", 1.0)
-    return None
-
-
-def _field(fields: dict[str, str], pattern: object, masses: bool = False) -> str:
-    for key, value in fields.items():
-        name = plain(key).split("(")[0].split("[")[0].strip(" .:")
-        if pattern.fullmatch(name):  # type: ignore[attr-defined]
-            words = value.split()
-            is_mass = len(words) == 2 and words[1] in MASSES
-            if masses or not is_mass:
-                return value
-    return ""
-
-
-def _names(grid: Grid, layout: Layout, table: Table, sample: Sample, alone: bool, many_sheets: bool) -> tuple[str, str]:
-    """Sample and lot: column header, block title, fields, sheet, file name; the nearest to the numbers first."""
-    stem = Path(grid.source).stem
-    name, lot = strip_word(sample.name)
-    title, title_lot = strip_word(table.title)
-    field_name, field_lot = _field(layout.fields, SAMPLE), _field(layout.fields, LOT)
-    sheet = grid.sheet if many_sheets and grid.sheet else ""
-    if alone and not many_sheets:
-        name = field_name or name or field_lot or stem
-        return name, sample.lot or field_lot or lot or name
-    own = name or title
-    name = own or field_name or sheet or stem
-    lot = sample.lot or lot or ("" if own else title_lot) or (field_lot if alone else "") or name
-    return name, lot
-
-
 def _row_text(grid: Grid, row: int) -> str:
     return shown(" ".join(f"{c:g}" if isinstance(c, float) else c for c in grid.rows[row] if c != ""))
 
@@ -379,7 +290,9 @@ def _distinct(reports: list[Report]) -> list[Report]:
                 sample=f"{report.sample} ({count})",
                 lot=f"{report.lot} ({count})" if report.lot == report.sample else report.lot,
             )
-        twin = next((o for o in out if np.array_equal(o.shares, report.shares) and np.array_equal(o.edges, report.edges)), None)
+        twin = next(
+            (o for o in out if np.array_equal(o.shares, report.shares) and np.array_equal(o.edges, report.edges)), None
+        )
         if twin is not None:
             report = replace(report, warnings=(*report.warnings, f"the same numbers as sample {shown(twin.sample)}"))
         out.append(report)

@@ -1,34 +1,23 @@
-"""Which columns of a table are sizes and which are quantities, and which quantities belong to one sample."""
+"""Which columns of a table are sizes and which are quantities, from the user, the headers and the numbers."""
 
 import re
-from dataclasses import dataclass, field
-from typing import NoReturn
+from itertools import pairwise
 
 import numpy as np
 
 from psdflow.errors import InputError, shown
+from psdflow.reports.apertures import size_of
 from psdflow.reports.cells import letters
-from psdflow.reports.edges import SizeColumns, Sizes, looks_like_sizes, read_sizes
+from psdflow.reports.edges import Sizes, looks_like_sizes, read_sizes
+from psdflow.reports.layout import SizeColumns, Table, undecided
 from psdflow.reports.numerals import LENGTHS, Decimal, Numeral, numeral, plain
 from psdflow.reports.quantities import Quantity, read_quantity
 from psdflow.reports.report import Options
-from psdflow.reports.tables import Table
-from psdflow.reports.words import AVERAGE, LOT, REPEAT, SAMPLE, STATISTIC, heading, name_left
+from psdflow.reports.samples import Sample, grouped
+from psdflow.reports.words import STATISTIC, heading
 
 SIZE_ROLES = ("size", "lower", "upper", "mid")
 QUANTITY_ROLES = ("mass", "share", "under", "over")
-
-
-@dataclass
-class Sample:
-    """The columns of one sample: its sizes and one column for each role; repeats are further readings."""
-
-    sizes: Sizes
-    quantities: dict[str, Quantity]
-    name: str
-    lot: str = ""
-    repeats: list["Sample"] = field(default_factory=list)
-    notes: list[str] = field(default_factory=list)
 
 
 def recognise(table: Table, options: Options, decimal: Decimal) -> list[Sample]:
@@ -43,13 +32,15 @@ def recognise(table: Table, options: Options, decimal: Decimal) -> list[Sample]:
         sizes, columns = _said(table, options.columns)
         chosen = read_sizes(table, sizes, decimal, options.size_unit)
         found = [_said_quantity(chosen, j, decimal, role) for role, j in columns]
-        return _grouped(chosen, found, said=True)
+        return grouped(chosen, found, said=True)
     units = _size_columns(table, decimal, options)
     samples: list[Sample] = []
     taken = {c for unit in units for c in unit.all}
     for columns_of_size in units:
         chosen = read_sizes(table, columns_of_size, decimal, options.size_unit)
-        quantities, unused, unsure = [], [], []
+        quantities: list[Quantity] = []
+        unused: list[int] = []
+        unsure: list[int] = []
         for j in columns_of_size.span:
             if j in taken or _is_blank(table, j):
                 continue
@@ -65,14 +56,23 @@ def recognise(table: Table, options: Options, decimal: Decimal) -> list[Sample]:
             elif _mostly_numbers(table, j, decimal):
                 (unsure if head.unit or head.role or head.text else unused).append(j)
         if not quantities:
-            _undecided(table, "no column could be recognised as a mass, a share or a cumulative share")
+            raise undecided(table, "no column could be recognised as a mass, a share or a cumulative share")
         for j in unsure:
             head = heading(table.headers[j])
-            if head.unit or head.role or any(not heading(table.headers[q.column]).unit + heading(table.headers[q.column]).role for q in quantities):
-                _undecided(table, f"{table.column_name(j)} is neither a share that adds up to 100 % nor cumulative")
+            if (
+                head.unit
+                or head.role
+                or any(
+                    not heading(table.headers[q.column]).unit + heading(table.headers[q.column]).role
+                    for q in quantities
+                )
+            ):
+                raise undecided(
+                    table, f"{table.column_name(j)} is neither a share that adds up to 100 % nor cumulative"
+                )
             unused.append(j)
         unused.sort()
-        new = _grouped(chosen, quantities)
+        new = grouped(chosen, quantities)
         if unused:
             names = ", ".join(table.column_name(j) for j in unused[:6])
             for sample in new:
@@ -89,24 +89,6 @@ def _mostly_numbers(table: Table, column: int, decimal: Decimal, of_all: bool = 
     """Whether most filled cells (or, ``of_all``, most cells) of a column are numbers."""
     cells = [row[column] for row in table.rows if of_all or row[column] != ""]
     return sum(numeral(c, decimal) is not None for c in cells) >= 0.6 * len(cells)
-
-
-def _undecided(table: Table, why: str) -> NoReturn:
-    seen = []
-    for j in range(len(table.headers)):
-        if not _is_blank(table, j):
-            values = [row[j] for row in table.rows[:3]]
-            text = ", ".join(f"{v:g}" if isinstance(v, float) else " ".join(v.split())[:20] for v in values)
-            header = " ".join(table.headers[j].split())[:40]
-            where = f"row {table.grid.numbers[table.lines[j]]}" if table.across else letters(j)
-            seen.append(f"{where} {shown(header) if header else '(no header)'}: {text}, …")
-    listed = "; ".join(seen[:8]) + (f"; and {len(seen) - 8} more" if len(seen) > 8 else "")
-    line = table.grid.numbers[table.lines[0] if table.across else table.place[0]]
-    raise InputError(
-        f"{table.grid.name}, table at row {line}: {why}. Columns seen: {listed}. "
-        "Say which is which: --columns size=A,share=B (roles: size or lower and upper or mid; mass, share, under, over; "
-        "a column by header, number or letter)"
-    )
 
 
 def _size_columns(table: Table, decimal: Decimal, options: Options) -> list[SizeColumns]:
@@ -129,7 +111,7 @@ def _size_columns(table: Table, decimal: Decimal, options: Options) -> list[Size
         if options.size_unit and unnamed:
             named = unnamed[:1]
         else:
-            _undecided(table, "no column could be recognised as the sizes")
+            raise undecided(table, "no column could be recognised as the sizes")
     groups: list[list[int]] = []
     for j in named:
         between = range(groups[-1][-1] + 1, j) if groups else range(0)
@@ -170,12 +152,12 @@ def _one_set(table: Table, columns: list[int], decimal: Decimal) -> SizeColumns:
         return SizeColumns(size=rest[0])
     if len(lowers) + len(uppers) == 1:
         return SizeColumns(size=(lowers + uppers)[0])
-    _undecided(table, "several columns may be the sizes")
+    raise undecided(table, "several columns may be the sizes")
 
 
 def _joining(columns: list[int], numbers: dict[int, list[Numeral | None]]) -> tuple[int, int] | None:
     """Two columns where each class ends at the next one's beginning, whatever their headers."""
-    for a, b in zip(columns, columns[1:], strict=False):
+    for a, b in pairwise(columns):
         one = np.array([getattr(n, "value", np.nan) for n in numbers[a]])
         two = np.array([getattr(n, "value", np.nan) for n in numbers[b]])
         if len(one) < 3:
@@ -184,8 +166,10 @@ def _joining(columns: list[int], numbers: dict[int, list[Numeral | None]]) -> tu
             down, up = np.abs(y[1:] - x[:-1]), np.abs(y[:-1] - x[1:])
             for gap in (down, up):
                 known = np.isfinite(gap)
-                if known.sum() >= 2 and np.all(gap[known] <= 2e-3 * np.abs(np.where(np.isfinite(x), x, 0)).max() * 0.05) and np.all(
-                    (y - x)[np.isfinite(y - x)] > 0
+                if (
+                    known.sum() >= 2
+                    and np.all(gap[known] <= 2e-3 * np.abs(np.where(np.isfinite(x), x, 0)).max() * 0.05)
+                    and np.all((y - x)[np.isfinite(y - x)] > 0)
                 ):
                     return order
     return None
@@ -258,154 +242,10 @@ def _said_quantity(sizes: Sizes, column: int, decimal: Decimal, role: str) -> Qu
     return quantity
 
 
-def _grouped(sizes: Sizes, quantities: list[Quantity], said: bool = False) -> list[Sample]:
-    """Quantities that belong together become one sample; readings of one sample become its repeats."""
-    if not said:
-        quantities = _without_gross(sizes, quantities)
-    names = [_name(sizes.table, q.column) for q in quantities]
-    by_role: dict[str, list[int]] = {}
-    for k, quantity in enumerate(quantities):
-        by_role.setdefault(quantity.role, []).append(k)
-    most = max(len(ks) for ks in by_role.values())
-    if most == 1:
-        groups = [list(range(len(quantities)))]
-    elif len(by_role) == 1:
-        groups = [[k] for k in range(len(quantities))]
-    else:
-        groups = _groups_of_several(sizes.table, quantities, names, by_role)
-    samples = []
-    for group in groups:
-        columns = {quantities[k].role: quantities[k] for k in group}
-        name = next((names[k] for k in group if names[k]), "")
-        lot = next((sizes.table.lots[quantities[k].column] for k in group if quantities[k].column in sizes.table.lots), "")
-        if len(groups) == 1 and not lot and not any(_all_name(sizes.table, quantities[k].column) for k in group):
-            name = ""
-        samples.append(Sample(sizes, columns, name, lot))
-    return _repeats(samples)
-
-
-def _name(table: Table, column: int) -> str:
-    if column in table.names:
-        return table.names[column]
-    lines = table.headers[column].split("\n")
-    names = [left for line in lines if (left := name_left(line))]
-    return names[-1] if names else ""
-
-
-def _all_name(table: Table, column: int) -> bool:
-    """Whether a header is a name (and a unit) with no word for a quantity in it."""
-    head = heading(table.headers[column])
-    return column in table.names or (head.role in ("", "mass") and bool(name_left(table.headers[column])))
-
-
-def _groups_of_several(
-    table: Table, quantities: list[Quantity], names: list[str], by_role: dict[str, list[int]]
-) -> list[list[int]]:
-    count = len(next(iter(by_role.values())))
-    if all(len(ks) == count for ks in by_role.values()):
-        named = {(quantities[k].role, names[k]) for k in range(len(names))}
-        sets = {frozenset(names[k] for k in ks) for ks in by_role.values()}
-        if len(named) == len(names) and len(sets) == 1 and all(names):
-            return [[ks[[names[k] for k in ks].index(name)] for ks in by_role.values()] for name in (names[k] for k in next(iter(by_role.values())))]
-        step = len(by_role)
-        pattern = [quantities[k].role for k in range(step)]
-        if all(quantities[k].role == pattern[k % step] for k in range(len(quantities))) and len(set(pattern)) == step:
-            return [list(range(k, k + step)) for k in range(0, len(quantities), step)]
-        if not any(names):
-            ordered = list(by_role.values())
-            return [[ks[i] for ks in ordered] for i in range(count)]
-    _undecided(table, "several columns of different kinds can't be told apart as samples")
-
-
-def _without_gross(sizes: Sizes, quantities: list[Quantity]) -> list[Quantity]:
-    """Net masses: gross columns (container included) are left out, or turned to net with the empty mass."""
-    gross = [q for q in quantities if q.role == "gross"]
-    tare = [q for q in quantities if q.role == "tare"]
-    rest = [q for q in quantities if q.role not in ("gross", "tare")]
-    masses = [q for q in rest if q.role == "mass"]
-    for one in list(masses):
-        for other in masses:
-            if one is not other and one in rest and _contains(one, other):
-                rest.remove(one)
-                other.notes.append(f"{one.table.column_name(one.column)} was read as gross mass (container included) and not used")
-    if gross and tare and not any(q.role in ("mass", "share", "under", "over") for q in rest):
-        return [_net(sizes, g, t) for g, t in zip(gross, tare, strict=False)]
-    if not rest:
-        _undecided(sizes.table, "only gross masses were recognised; the empty sieve or container masses are needed, too")
-    for q in gross + tare:
-        rest[0].notes.append(f"{q.table.column_name(q.column)} was read as {'gross' if q.role == 'gross' else 'empty'} mass and not used")
-    return rest
-
-
-def _contains(gross: Quantity, net: Quantity) -> bool:
-    """Whether one mass column is the other plus a container that stays the same over several rows."""
-    pairs = [(g, n) for g, n in zip(gross.values, net.values, strict=True) if g and n]
-    if len(pairs) < 3:
-        return False
-    difference = np.array([g - n for g, n in pairs])
-    if np.any(difference <= 0) or difference.min() < 0.2 * max(n for _, n in pairs):
-        return False
-    groups = len(np.unique(np.round(difference, 1)))
-    return groups <= max(1, len(pairs) // 3)
-
-
-def _net(sizes: Sizes, gross: Quantity, tare: Quantity) -> Quantity:
-    values: list[float | None] = []
-    for k, (full, empty) in enumerate(zip(gross.values, tare.values, strict=True)):
-        if full is None or empty is None:
-            values.append(None)
-            continue
-        if full < empty:
-            raise InputError(
-                f"{gross.where(sizes, k)}: gross mass {full:g} is under the empty mass {empty:g}; a net mass can't be negative. Check both masses."
-            )
-        values.append(full - empty)
-    notes = [f"net mass = {gross.table.column_name(gross.column)} less {tare.table.column_name(tare.column)}"]
-    return Quantity(gross.table, gross.column, "mass", 0.0, gross.unit, values, [*gross.notes, *tare.notes, *notes])
-
-
-def _repeats(samples: list[Sample]) -> list[Sample]:
-    """Put "A run 1", "A run 2" together; leave out columns of averages and of summary words."""
-    if len(samples) < 2:
-        return samples
-    kept: list[Sample] = []
-    by_base: dict[str, list[Sample]] = {}
-    averages = [s for s in samples if AVERAGE.fullmatch(plain(s.name)) or AVERAGE.search(plain(s.name).split(" ")[-1] if s.name else "")]
-    others = [s for s in samples if s not in averages]
-    if not others:
-        return samples
-    for sample in others:
-        match = REPEAT.fullmatch(plain(sample.name))
-        base = match[1].strip() if match else None
-        if base is None:
-            kept.append(sample)
-        elif base in by_base:
-            by_base[base].append(sample)
-        else:
-            by_base[base] = [sample]
-            kept.append(sample)
-    for base, readings in by_base.items():
-        if len(readings) > 1:
-            readings[0].repeats = readings[1:]
-            readings[0].notes.append(f"{len(readings)} readings of one sample were averaged")
-            readings[0].name = readings[0].name[: len(base)].strip(" -_(,") if base else ""
-    for average in averages:
-        kept[0].notes.append(f"column of averages not used: {average.name}")
-    return kept
-
-
-def strip_word(name: str) -> tuple[str, str]:
-    """("B", "B") for "Lot B", ("B", "") for "Sample B": name without its leading word, and the lot if it is one."""
-    match = re.match(r"(\S+)[\s:.#]+(.+)", name)
-    if match and LOT.fullmatch(plain(match[1])):
-        return match[2], match[2]
-    if match and SAMPLE.fullmatch(plain(match[1])):
-        return match[2], ""
-    return name, ""
-
-
-def only_percentiles(table: Table) -> bool:
+def only_percentiles(table: Table, decimal: Decimal) -> bool:
     """Whether a table lists percentiles and means rather than classes."""
+    if any(row[0] != "" and (size := size_of(row[0], decimal)) and size.kind != "edge" for row in table.rows):
+        return False
     labels = [plain(str(row[0])) for row in table.rows if row[0] != ""]
     in_rows = sum(bool(STATISTIC.fullmatch(label)) for label in labels)
     in_head = sum(bool(STATISTIC.fullmatch(plain(h))) for h in table.headers if h)

@@ -4,10 +4,11 @@ import numpy as np
 
 from psdflow.errors import InputError
 from psdflow.reports.apertures import nominal
-from psdflow.reports.classes import Classes, cumulative, from_middles, in_class
+from psdflow.reports.classes import Classes, from_middles, in_class
+from psdflow.reports.cumulative import cumulative
 from psdflow.reports.quantities import TOTAL_REFUSE, TOTAL_WARN, Quantity
-from psdflow.reports.recognise import Sample
 from psdflow.reports.report import Options
+from psdflow.reports.samples import Sample
 
 
 def sieve_classes(sample: Sample, options: Options, charge: float | None) -> tuple[Classes, Quantity]:
@@ -28,7 +29,7 @@ def sieve_classes(sample: Sample, options: Options, charge: float | None) -> tup
     edge = sample.sizes.edge if sample.sizes.edge in ("upper", "mid") and best in ("mass", "share") else "lower"
     classes = _one(sample, quantity, edge, charge)
     if best == "mass":
-        classes.warnings += _loss(sample, quantity, classes.total, options, charge)
+        classes.warnings += _loss(quantity, classes.total, options, charge)
     if best in ("mass", "share"):
         classes.warnings += stated_total(sample, quantity, classes.total)
         if not sample.sizes.has_pan and edge == "lower":
@@ -39,7 +40,9 @@ def sieve_classes(sample: Sample, options: Options, charge: float | None) -> tup
             compare(classes, _one(sample, other, edge, charge), quantity, other)
     strange = [f"{size * 1e6:.4g}" for size in classes.edges if edge != "mid" and nominal(size) is None]
     if strange:
-        classes.warnings.append(f"{', '.join(strange[:8])} µm: no nominal aperture of ISO 565 or ASTM E11 within 2.5 %; kept as given")
+        classes.warnings.append(
+            f"{', '.join(strange[:8])} µm: no nominal aperture of ISO 565 or ASTM E11 within 2.5 %; kept as given"
+        )
     return classes, quantity
 
 
@@ -51,7 +54,7 @@ def _one(sample: Sample, quantity: Quantity, edge: str, charge: float | None) ->
     return in_class(sample.sizes, quantity, edge)
 
 
-def _loss(sample: Sample, quantity: Quantity, total: float, options: Options, charge: float | None) -> list[str]:
+def _loss(quantity: Quantity, total: float, options: Options, charge: float | None) -> list[str]:
     """Mass weighed in against the sum of the fractions; limits are the practice of the trade, settable."""
     if charge is None:
         return []

@@ -8,7 +8,7 @@ from psdflow.reports.cells import MAX_CELLS, Grid
 from psdflow.reports.numerals import Cell
 
 _SEPARATORS = ("\t", ";", "|", ",")
-_LINES_LOOKED_AT = 80
+_LINES_LOOKED_AT = 40
 _CONTROL = re.compile(r"[\x00-\x08\x0e-\x1a\x1c-\x1f]")
 
 # A cell that is a size or a number: what is left after digits, signs and unit words are taken away is nothing.

@@ -105,16 +105,18 @@ INPUT_MASS = _words(
     r"test portion|(?:mass|weight) before(?: sieving)?|total dry (?:mass|weight)|charge weighed.*",
 )
 STATISTIC = re.compile(
-    r"(?:[dx]\s*[\[(_]?\s*\d{1,2}(?:[.,]\s*\d)?\s*[\])]?.*|(?:mean|median|mode|span|average|std|standard deviation|specific surface|mittel\w*|median\w*|"
+    r"(?:[dx] ?[\[(_]? ?(?:\d\d|0[.,]\d{1,2}|[1-4] ?[.,] ?[0-3])(?!\d) ?[\])]?.*|(?:mean|median|mode|span|average|std|standard deviation|specific surface|mittel\w*|median\w*|"
     r"moyenne|mediane|media|mediana|moda|uniformity|obscuration|residual|fit|sauter|skewness|kurtosis|surface|spezifische|surface specifique)(?![a-z]).*)"
 )
+# Words that mean sieving wherever they stand, and words of the trade that a cumulative laser table may use, too.
 SIEVE = _words(
-    r"sieve\w*|sieving|siev\w*|screen(?:s|ing)?|mesh|retained|passing|sieb\w*|masch\w*|\w*ruckstand\w*|\w*rueckstand\w*|tamis\w*|refus|passants?|tamiz\w*|tamices",
-    r"luz de malla|mallas?|retenido|pasante|astm e ?11|iso 3310.*|durchgang|siebdurchgang|auswaage",
+    r"sieve\w*|siev\w*|screen(?:s|ing)?|mesh|sieb\w*|masch\w*|tamis\w*|tamiz\w*|tamices|luz de malla|mallas?|astm e ?11|iso 3310.*|auswaage",
 )
-LASER = _words(
-    r"laser\w*|diffraction|\w*beugung\w*|difraccion|diffraktion\w*|granulometrie laser|volume|vol\.?|volumen\w*|light scattering|iso 13320.*|channel|obscuration"
+RETAINED_OR_PASSING = _words(
+    r"retained|passing|\w*ruckstand\w*|\w*rueckstand\w*|\w*durchgang\w*|refus|passants?|reteni\w*|pasantes?|pasa",
 )
+LASER = _words(r"laser\w*|diffraction|\w*beugung\w*|difraccion|diffraktion\w*|light scattering|iso 13320.*|obscuration")
+VOLUME = _words(r"volume|vol\.?|volumen\w*|channels?")
 LOT = _words(
     r"lot(?:s)?|lot (?:no|number|nr|id)\.?|batch\w*|charge(?:n?[\s-]?(?:nr|no|nummer)\.?)?|los(?:nummer|-nr\.?)?|lote|partida|numero de lote|n° de lot|lot n°"
 )
@@ -166,7 +168,9 @@ def heading(raw: str) -> Heading:
     length, mass = _LENGTH.search(text) or _LENGTH_SUFFIX.search(text), _MASS.search(text)
     percent, fraction = _PERCENT.search(text), _FRACTION.search(text)
     role = _role(text, bool(mass), bool(percent))
-    is_size = not percent and not mass and bool(length or _SYMBOL.match(text) or (SIZE.search(text) and role in ("", "edge")))
+    is_size = (
+        not percent and not mass and bool(length or _SYMBOL.match(text) or (SIZE.search(text) and role in ("", "edge")))
+    )
     if is_size or (length and not percent and not mass):
         return Heading(text, True, _edge(text), "", _length_unit(length), False)
     unit = "%" if percent else (_mass_unit(mass[1]) if mass else ("1" if fraction else ""))

@@ -14,10 +14,8 @@ import pytest
 from psdflow.errors import InputError
 from psdflow.reports import Report, read, read_folder
 
-
 HERE = Path(__file__).parent
 FILES, BAD = HERE / "files", HERE / "bad"
-
 
 
 class Expected(NamedTuple):
@@ -241,7 +239,13 @@ def test_what_a_reader_must_know_is_warned(file: str, part: str) -> None:
     assert any(part in warning for report in read(FILES / file) for warning in report.warnings)
 
 
-QUIET = ["sieve_mass_um.csv", "sieve_three_columns.csv", "sieve_german_latin1.csv", "laser_upper_edges.csv", "sieve_lower_upper.csv"]
+QUIET = [
+    "sieve_mass_um.csv",
+    "sieve_three_columns.csv",
+    "sieve_german_latin1.csv",
+    "laser_upper_edges.csv",
+    "sieve_lower_upper.csv",
+]
 
 
 @pytest.mark.parametrize("file", QUIET)

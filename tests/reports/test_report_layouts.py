@@ -113,7 +113,9 @@ def test_samples_side_by_side_and_underneath_read_the_same(tmp_path: Path) -> No
     for size, value in zip([*EDGES_UM[::-1]], [ABOVE, *SHARES[::-1]], strict=True):
         beside.write(f"{size:g};{value:g};{value * 2:g}\n")
     beside.write(f"Pan;{BELOW:g};{BELOW * 2:g}\n")
-    (tmp_path / "beside.csv").write_text(beside.getvalue().replace("East", "East (g)").replace("West", "West (g)"), encoding="utf-8")
+    (tmp_path / "beside.csv").write_text(
+        beside.getvalue().replace("East", "East (g)").replace("West", "West (g)"), encoding="utf-8"
+    )
     under = "\n\n".join(
         f"Sample: {name}\nAperture (µm);Mass retained (g)\n"
         + "\n".join(f"{s:g};{v * k:g}" for s, v in zip(EDGES_UM[::-1], [ABOVE, *SHARES[::-1]], strict=True))
@@ -126,3 +128,40 @@ def test_samples_side_by_side_and_underneath_read_the_same(tmp_path: Path) -> No
         assert [r.sample for r in reports] == ["East", "West"]
         for report in reports:
             _check(report)
+
+
+LASER_EDGES = np.array([0.5, 1, 2, 4, 8, 16, 31.5])  # µm
+LASER_SHARES = np.array([2.5, 9.125, 30.375, 38.0, 15.0, 5.0])  # % between them
+LASER_WORDS = {
+    "english": ("Lower edge", "Upper edge", "Volume in class", "Cumulative undersize", "Cumulative oversize"),
+    "german": ("Klasse von", "Klasse bis", "Volumenanteil", "Durchgangssumme", "Rückstandssumme"),
+    "french": ("Borne inférieure", "Borne supérieure", "% volume", "Cumulé inférieur", "Cumulé supérieur"),
+}
+
+
+@pytest.mark.parametrize("language", LASER_WORDS)
+@pytest.mark.parametrize("layout", ["upper", "lower", "both", "under", "over", "share and under"])
+def test_every_laser_layout_reads_back(language: str, layout: str, tmp_path: Path) -> None:
+    lower, upper, share, under, over = LASER_WORDS[language]
+    fine = np.concatenate([[0.0], np.cumsum(LASER_SHARES)])
+    columns = {
+        "upper": [(upper, "µm", LASER_EDGES), (share, "%", np.array([0, *LASER_SHARES]))],
+        "lower": [(lower, "µm", LASER_EDGES), (share, "%", np.array([*LASER_SHARES, 0]))],
+        "both": [(lower, "µm", LASER_EDGES[:-1]), (upper, "µm", LASER_EDGES[1:]), (share, "%", LASER_SHARES)],
+        "under": [("x", "µm", LASER_EDGES), (under, "%", fine)],
+        "over": [("x", "µm", LASER_EDGES), (over, "%", 100 - fine)],
+        "share and under": [("x", "µm", LASER_EDGES), (share, "%", np.array([*LASER_SHARES, 0])), (under, "%", fine)],
+    }[layout]
+    for factor, unit in ((1.0, "µm"), (1e-3, "mm"), (1e3, "nm")):
+        for separator, decimal, reverse in itertools.product((";", "\t", "   "), ".,", (False, True)):
+            heads = [f"{name} ({unit if u == 'µm' else u})" for name, u, _ in columns]
+            values = [v * (factor if u == "µm" else 1.0) for _, u, v in columns]
+            rows = [[f"{x:.9g}".replace(".", decimal) for x in row] for row in zip(*values, strict=True)]
+            lines = [separator.join(row) for row in (rows[::-1] if reverse else rows)]
+            file = tmp_path / "laser.txt"
+            file.write_text("\n".join(["Laser diffraction", "", separator.join(heads), *lines]), encoding="utf-8")
+            (report,) = read(file)
+            assert (report.kind, report.quantity) == ("laser", "volume")
+            np.testing.assert_allclose(report.edges * 1e6, LASER_EDGES, rtol=1e-9)
+            np.testing.assert_allclose(report.shares * 100, LASER_SHARES, atol=1e-7)
+            assert (report.below, report.above) == pytest.approx((0, 0), abs=1e-9)

@@ -14,7 +14,12 @@ FILES, BAD = HERE / "files", HERE / "bad"
 
 def test_columns_by_number_letter_and_header() -> None:
     expected = read(FILES / "sieve_three_columns.csv")[0]
-    for columns in ("size=1,share=3", "size=A,share=C", "size=Sieve size (µm),share=% retained", "size=sieve size,mass=Mass"):
+    for columns in (
+        "size=1,share=3",
+        "size=A,share=C",
+        "size=Sieve size (µm),share=% retained",
+        "size=sieve size,mass=Mass",
+    ):
         (report,) = read(FILES / "sieve_three_columns.csv", columns=columns)
         np.testing.assert_allclose(report.shares, expected.shares, atol=1e-12)
 
@@ -32,7 +37,20 @@ def test_headerless_table_with_columns_and_unit(tmp_path: Path) -> None:
     assert (report.below * 100, report.above * 100) == pytest.approx((10, 2))
 
 
-@pytest.mark.parametrize("columns", ["size", "size=1", "share=2", "size=1,weight=2", "size=1,share=9", "size=1,share=nobody", "size=1,lower=2,share=3", ",", "size=,share=2"])
+@pytest.mark.parametrize(
+    "columns",
+    [
+        "size",
+        "size=1",
+        "share=2",
+        "size=1,weight=2",
+        "size=1,share=9",
+        "size=1,share=nobody",
+        "size=1,lower=2,share=3",
+        ",",
+        "size=,share=2",
+    ],
+)
 def test_wrong_columns_are_refused(columns: str) -> None:
     with pytest.raises(InputError, match=r"--columns|no column"):
         read(FILES / "sieve_three_columns.csv", columns=columns)
@@ -41,9 +59,13 @@ def test_wrong_columns_are_refused(columns: str) -> None:
 def test_kind_moves_the_class_of_a_single_size() -> None:
     """kind_unknown.csv: 3 7 18 32 28 12 % at 45 to 250 µm: retained on the size, or the class up to it."""
     (sieve,) = read(BAD / "kind_unknown.csv", kind="sieve")
-    np.testing.assert_allclose([sieve.below, *sieve.shares, sieve.above], np.array([0, 3, 7, 18, 32, 28, 12]) / 100, atol=1e-12)
+    np.testing.assert_allclose(
+        [sieve.below, *sieve.shares, sieve.above], np.array([0, 3, 7, 18, 32, 28, 12]) / 100, atol=1e-12
+    )
     (laser,) = read(BAD / "kind_unknown.csv", kind="laser")
-    np.testing.assert_allclose([laser.below, *laser.shares, laser.above], np.array([3, 7, 18, 32, 28, 12, 0]) / 100, atol=1e-12)
+    np.testing.assert_allclose(
+        [laser.below, *laser.shares, laser.above], np.array([3, 7, 18, 32, 28, 12, 0]) / 100, atol=1e-12
+    )
 
 
 def test_basis() -> None:

@@ -198,7 +198,13 @@ def test_heading(text: str, size: bool, edge: str, role: str, unit: str) -> None
 
 @pytest.mark.parametrize(
     ("header", "name"),
-    [("freshcat[g]", "freshcat"), ("Mass retained (g)", ""), ("PL1-C11-1-1", "PL1-C11-1-1"), ("% passing North", "North"), ("Lot A (g)", "Lot A")],
+    [
+        ("freshcat[g]", "freshcat"),
+        ("Mass retained (g)", ""),
+        ("PL1-C11-1-1", "PL1-C11-1-1"),
+        ("% passing North", "North"),
+        ("Lot A (g)", "Lot A"),
+    ],
 )
 def test_name_left_of_a_header(header: str, name: str) -> None:
     assert name_left(header) == name
@@ -231,7 +237,10 @@ def test_reading_a_csv_imports_nothing_heavy() -> None:
         "print([m for m in ('pandas', 'openpyxl', 'fluids', 'scipy', 'matplotlib', 'pint') if m in sys.modules])"
     )
     done = subprocess.run(
-        [sys.executable, "-c", code, str(HERE / "files" / "sieve_astm_numbers.csv")], capture_output=True, text=True, check=True
+        [sys.executable, "-c", code, str(HERE / "files" / "sieve_astm_numbers.csv")],
+        capture_output=True,
+        text=True,
+        check=True,
     )
     assert done.stdout.strip() == "[]"
 
