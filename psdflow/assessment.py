@@ -99,7 +99,8 @@ class Assessment:
         """What can hurt."""
         return cautions(self.duty)
 
-    def _index(self, lot: int) -> tuple[int, ...]:
+    def index(self, lot: int) -> tuple[int, ...]:
+        """Where lot number ``lot`` stands in the arrays."""
         return (lot,) if self.found.shape else ()
 
     def rows(self, lot: int = 0) -> list[Row]:
@@ -112,7 +113,7 @@ class Assessment:
 
     def row(self, key: str, lot: int = 0) -> Row:
         """One quantity of one lot."""
-        index, estimate = self._index(lot), self.found.estimates[key]
+        index, estimate = self.index(lot), self.found.estimates[key]
         value, method = estimate.value[index], str(estimate.method[index])
         unit = {"share": "1", "word": ""}.get(estimate.unit, estimate.unit)
         inside, source = bool(estimate.in_range[index]), source_of(method)
@@ -127,13 +128,13 @@ class Assessment:
 
     def warnings(self, lot: int = 0) -> list[str]:
         """The sentences that hold for one lot."""
-        index = self._index(lot)
+        index = self.index(lot)
         said = [notice.for_lot(index) for notice in self.found.notices]
         return list(dict.fromkeys(text for text in said if text))
 
     def alternatives(self, lot: int = 0) -> dict[str, dict[str, float | str]]:
         """What the other published methods say, by key and method."""
-        index = self._index(lot)
+        index = self.index(lot)
         result: dict[str, dict[str, float | str]] = {}
         for key, estimate in self.found.estimates.items():
             values = {name: _plain(value[index]) for name, value in estimate.alternatives.items()}
@@ -144,7 +145,7 @@ class Assessment:
 
     def classes(self, lot: int = 0) -> list[dict[str, float | None]]:
         """Rows by size class: edges, share, terminal velocity, carryover and cyclone."""
-        index = self._index(lot)
+        index = self.index(lot)
         columns = {name: np.broadcast_to(array, (*self.found.shape, self.distribution.classes))[index]
                    for name, array in self.found.classes.items()}  # fmt: skip
         count = self.distribution.classes
@@ -152,7 +153,7 @@ class Assessment:
 
     def indicators(self, lot: int = 0) -> list[dict[str, Any]]:
         """The signs of cohesion: value, threshold, state (clear, borderline, flag) and source."""
-        index = self._index(lot)
+        index = self.index(lot)
         result = []
         for sign in self.found.indicators:
             score = float(sign.score[index])

@@ -6,7 +6,7 @@ liquid water by IAPWS-95 and IAPWS 2008, because Lucas is 5 to 10 % low for hot 
 """
 
 import math
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import Literal, NamedTuple
 
 from psdflow.errors import InputError
@@ -110,7 +110,7 @@ def composition(name: str) -> dict[str, float]:
 def gas(name: str, *, temperature: float, pressure: float) -> Fluid:
     """A named gas at ``temperature`` (K) and absolute ``pressure`` (Pa); see `gas_mixture`."""
     fluid = gas_mixture(composition(name), temperature=temperature, pressure=pressure)
-    return Fluid(**{**fluid.__dict__, "name": name})
+    return replace(fluid, name=name)
 
 
 def gas_mixture(fractions: dict[str, float], *, temperature: float, pressure: float) -> Fluid:

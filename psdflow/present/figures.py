@@ -59,7 +59,7 @@ def distribution_figure(assessment: Assessment, lot: int = 0) -> Figure:
             upper.plot([size, size], [0, fraction * 100], color=SOFT, linewidth=0.8)
             upper.annotate(f"d{fraction * 100:.0f} {digits(size)} µm", (size, fraction * 100), xytext=(5, -10),
                            textcoords="offset points", color=INK, fontsize=8)  # fmt: skip
-        mean = float(assessment["d32"][assessment._index(lot)]) * 1e6
+        mean = float(assessment["d32"][assessment.index(lot)]) * 1e6
         lower.stairs(density, edges, fill=True, color=PALE)
         lower.stairs(density, edges, color=INK, linewidth=1.0)
         for is_open, k in ((report.lower_open, 0), (report.upper_open, -1)):

@@ -58,8 +58,9 @@ def _carryover(rows: dict[str, Row]) -> str:
 
 def short_verdict(assessment: Assessment, lot: int = 0) -> str:
     """One phrase for an overview: fluidizes, test, hold, carried out or fixed."""
-    risk = str(assessment["cohesion_risk"][_index(assessment, lot)]) if "cohesion_risk" in assessment else ""
-    regime = str(assessment["regime"][_index(assessment, lot)])
+    at = assessment.index(lot)
+    risk = str(assessment["cohesion_risk"][at]) if "cohesion_risk" in assessment else ""
+    regime = str(assessment["regime"][at])
     if risk == "high":
         return "hold: cohesive"
     if regime == "fixed bed":
@@ -69,7 +70,3 @@ def short_verdict(assessment: Assessment, lot: int = 0) -> str:
     if regime in {"fast fluidization or transport", "hydraulic transport"}:
         return "carried out"
     return "fluidizes"
-
-
-def _index(assessment: Assessment, lot: int) -> tuple[int, ...]:
-    return (lot,) if assessment.found.shape else ()
