@@ -56,6 +56,36 @@ class Case:
         return self.duty.fluid.resolved
 
     @cached_property
+    def _state(self) -> tuple[Array, Array]:
+        """Density (kg/m³) and viscosity (Pa·s); one temperature and one pressure move both in every draw."""
+        density, viscosity = np.asarray(self.fluid.density, float), np.asarray(self.fluid.viscosity, float)
+        state = self.duty.fluid
+        if self.draws is None:
+            return density, viscosity
+        for name, given in (("temperature", state.temperature), ("pressure", state.pressure)):
+            if given is not None and given.tolerance:
+                slope_density, slope_viscosity = state.slopes(name)
+                step = given.tolerance / 1.96 * self.draws.normal(name)
+                density, viscosity = density * np.exp(slope_density * step), viscosity * np.exp(slope_viscosity * step)
+        return density, viscosity
+
+    @property
+    def fluid_density(self) -> Array:
+        """kg/m³, drawn with the duty's tolerances of temperature and pressure."""
+        return self._state[0]
+
+    @property
+    def fluid_viscosity(self) -> Array:
+        """Pa·s, drawn as the density."""
+        return self._state[1]
+
+    @cached_property
+    def velocity(self) -> Array:
+        """Superficial operating velocity, m/s, drawn if the duty states a tolerance."""
+        given = self.duty.velocity
+        return self._property("velocity", given, 0.0, 1e-9, np.inf)
+
+    @cached_property
     def report(self) -> SizeDistribution:
         """The distribution in the sizes that were measured, redrawn if this is the drawn case."""
         return self.distribution if self.draws is None else redrawn_report(self.distribution, self.draws)
@@ -141,8 +171,8 @@ class Case:
         """The three arguments that most formulas share: grain and fluid."""
         return {
             "particle_density": self.particle_density,
-            "fluid_density": self.fluid.density,
-            "fluid_viscosity": self.fluid.viscosity,
+            "fluid_density": self.fluid_density,
+            "fluid_viscosity": self.fluid_viscosity,
         }
 
     @property

@@ -1,5 +1,6 @@
 """The duty document: where and how the powder is fluidized."""
 
+import math
 from functools import cached_property
 from typing import Literal
 
@@ -9,6 +10,7 @@ from psdflow import fluid as fluids
 from psdflow.documents import (
     Density,
     Document,
+    Fraction,
     Length,
     MassRate,
     Pressure,
@@ -20,6 +22,7 @@ from psdflow.documents import (
 )
 from psdflow.errors import InputError
 from psdflow.fluid import Fluid
+from psdflow.units import Measured
 
 
 class FluidState(Document):
@@ -57,6 +60,9 @@ class FluidState(Document):
     @cached_property
     def resolved(self) -> Fluid:
         """Density and viscosity at this state."""
+        return self._resolve()
+
+    def _resolve(self) -> Fluid:
         t = self.temperature.value if self.temperature else None
         p = self.pressure.value if self.pressure else None
         if self.density is not None and self.viscosity is not None:
@@ -70,19 +76,39 @@ class FluidState(Document):
             return fluids.gas_mixture(self.mixture, temperature=t, pressure=p)
         return fluids.liquid(self.liquid or "", temperature=t, pressure=p)
 
+    def slopes(self, name: str) -> tuple[float, float]:
+        """``d ln ρ / dx`` and ``d ln µ / dx`` at this state, x the temperature (1/K) or the pressure (1/Pa).
+
+        Zero where the fluid was given by its density and viscosity: nothing ties them to the state.
+        """
+        given: Measured | None = getattr(self, name)
+        if given is None or self.density is not None:
+            return 0.0, 0.0
+        step = given.value * 1e-4
+        ends = [self.model_copy(update={name: Measured(given.value + side * step)}) for side in (-1, 1)]
+        low, high = (end._resolve() for end in ends)
+        return (
+            math.log(high.density / low.density) / (2 * step),
+            math.log(high.viscosity / low.viscosity) / (2 * step),
+        )
+
 
 class Bed(Document):
-    """The vessel: inner diameter, height of the settled bed, free height from its surface to the outlet."""
+    """The vessel: inner diameter, height of the settled bed, free height from its surface to the outlet.
+
+    ``hole_pitch`` is the spacing of the distributor's holes; ``inlet_diameter`` the one inlet of a spouted bed.
+    """
 
     diameter: Length
     settled_height: Length | None = None
     freeboard_height: Length | None = None
     distributor: Literal["perforated plate", "porous plate", "nozzle plate"] | None = None
     hole_pitch: Length | None = None
+    inlet_diameter: Length | None = None
 
     @model_validator(mode="after")
     def _possible(self) -> "Bed":
-        for key in ("diameter", "settled_height", "freeboard_height", "hole_pitch"):
+        for key in ("diameter", "settled_height", "freeboard_height", "hole_pitch", "inlet_diameter"):
             length = getattr(self, key)
             if length is not None:
                 require(1e-3 <= length.value <= 100, key, f"{length.value:g} m", "1 mm to 100 m")
@@ -115,7 +141,10 @@ class Cyclone(Document):
 
 
 class Duty(Document):
-    """Fluid state, vessel, superficial velocity at bed conditions; feed, hours and cyclones if there are any."""
+    """Fluid state, vessel, superficial velocity at bed conditions; feed, hours and cyclones if there are any.
+
+    ``coarse_end`` is the share (0.5..0.99, default 90 %) whose size stands for the coarse end in u_cf.
+    """
 
     name: str
     fluid: FluidState
@@ -123,11 +152,14 @@ class Duty(Document):
     bed: Bed | None = None
     feed: Feed | None = None
     operating_hours: Time | None = None
+    coarse_end: Fraction = Measured(0.9)
     cyclones: tuple[Cyclone, ...] = Field(default=(), max_length=3)
 
     @model_validator(mode="after")
     def _possible(self) -> "Duty":
         require(0 < self.velocity.value <= 50, "velocity", f"{self.velocity.value:g} m/s", "above 0, at most 50 m/s")
+        end = self.coarse_end.value
+        require(0.5 <= end <= 0.99, "coarse_end", f"{end:g}", "50 % to 99 %")
         if self.feed is not None:
             require(self.feed.rate.value > 0, "feed.rate", f"{self.feed.rate.value:g} kg/s", "above 0")
         if self.operating_hours is not None:

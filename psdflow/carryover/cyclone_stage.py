@@ -32,7 +32,7 @@ def cyclone_stage(case: Case, found: Findings, fine: SizeDistribution, size: Arr
     """Cut size, efficiency, pressure drop and loss; ``flux`` (kg/m²/s) by sub-class enters the first stage."""
     bed = case.duty.bed
     assert bed is not None
-    velocity, area = case.duty.velocity.value, np.pi / 4 * bed.diameter.value**2
+    velocity, area = case.velocity, np.pi / 4 * bed.diameter.value**2
     penetration = np.ones_like(flux)
     total_drop: Array = np.asarray(0.0)
     for number, entry in enumerate(case.duty.cyclones, start=1):
@@ -50,7 +50,7 @@ def cyclone_stage(case: Case, found: Findings, fine: SizeDistribution, size: Arr
         found.put("cyclone_pressure_drop_total", total_drop, "Pa", "sum of the stages")
 
 
-def _cut(case: Case, found: Findings, shape: CycloneGeometry, flow: float, suffix: str) -> tuple[Array, Array]:
+def _cut(case: Case, found: Findings, shape: CycloneGeometry, flow: Array, suffix: str) -> tuple[Array, Array]:
     """Cut size and grade-curve slope of the recommended model; every model's cut as an alternative."""
     every = models.cut_sizes(geometry=shape, flow=flow, **case.grain)
     key = next(iter(every))
@@ -61,31 +61,32 @@ def _cut(case: Case, found: Findings, shape: CycloneGeometry, flow: float, suffi
     return cut, np.broadcast_to(models.grade_slope(key, geometry=shape, cut=cut), case.shape)
 
 
-def _loaded(case: Case, fine: SizeDistribution, entering: Array, passed: Array, cut: Array, velocity: float) -> Array:
+def _loaded(case: Case, fine: SizeDistribution, entering: Array, passed: Array, cut: Array, velocity: Array) -> Array:
     """Penetration with what drops out at once because the gas can't carry it through the vortex."""
     from psdflow.carryover.stage import median_size
 
-    loading = entering.sum(axis=-1) / (velocity * case.fluid.density)
+    loading = entering.sum(axis=-1) / (velocity * case.fluid_density)
     median = np.nan_to_num(median_size(fine, entering), nan=1.0)
     limit = models.critical_loading(cut=cut, median_size=median, loading=loading)
     return models.penetration_with_loading(penetration=passed, loading=loading, limit=limit)
 
 
-def _pressure_drop(case: Case, found: Findings, shape: CycloneGeometry, flow: float, suffix: str) -> Array:
-    every = models.pressure_drops(geometry=shape, flow=flow, fluid_density=case.fluid.density)
+def _pressure_drop(case: Case, found: Findings, shape: CycloneGeometry, flow: Array, suffix: str) -> Array:
+    every = models.pressure_drops(geometry=shape, flow=flow, fluid_density=case.fluid_density)
     key = next(iter(every))
     value = every[key] * case.method_scatter(f"cyclone drop{suffix}", np.full((), key))
     note = "clean gas; lower with dust"
     return found.put(f"cyclone_pressure_drop{suffix}", value, "Pa", key, alternatives=every, note=note)
 
 
-def _inlet(found: Findings, shape: CycloneGeometry, flow: float, suffix: str, number: int) -> None:
+def _inlet(found: Findings, shape: CycloneGeometry, flow: Array, suffix: str, number: int) -> None:
     inlet = flow / shape.inlet_area
     found.put(f"cyclone_inlet_velocity{suffix}", inlet, "m/s", "definition")
     found.warn(
-        not LOWEST_INLET_VELOCITY <= inlet <= HIGHEST_INLET_VELOCITY,
-        f"cyclone {number}: the inlet velocity of {inlet:.1f} m/s is outside {LOWEST_INLET_VELOCITY:.0f} to "
+        (inlet < LOWEST_INLET_VELOCITY) | (inlet > HIGHEST_INLET_VELOCITY),
+        f"cyclone {number}: the inlet velocity of {{inlet:.1f}} m/s is outside {LOWEST_INLET_VELOCITY:.0f} to "
         f"{HIGHEST_INLET_VELOCITY:.0f} m/s: change its size or number",
+        inlet=inlet,
     )
     for doubt in shape_doubts(shape):
         found.warn(True, f"cyclone {number}: {doubt}")
@@ -106,7 +107,7 @@ def _losses(case: Case, found: Findings, fine: SizeDistribution, flux: Array, pe
         "loss_rate", gone * np.pi / 4 * bed.diameter.value**2, "kg/s", method, note="past the last cyclone"
     )
     found.put("loss_d50", median_size(fine, lost), "m", method, note="volume-equivalent")
-    concentration = gone / case.duty.velocity.value
+    concentration = gone / case.velocity
     found.put("loss_concentration", concentration, "kg/m^3", method, note="in the gas at bed conditions")
     if case.fluid.temperature is not None and case.fluid.pressure is not None:
         normal = case.fluid.temperature / NORMAL_TEMPERATURE * STANDARD_ATMOSPHERE / case.fluid.pressure

@@ -77,7 +77,7 @@ def cohesion_stage(case: Case, found: Findings) -> None:
 
 def _size_family(case: Case, found: Findings) -> tuple[Array, Array, Array]:
     """Score of the size family and the two ends of the C/A band (m)."""
-    densities: dict[str, Any] = {"particle_density": case.particle_density, "fluid_density": case.fluid.density}
+    densities: dict[str, Any] = {"particle_density": case.particle_density, "fluid_density": case.fluid_density}
     finest = molerus_ca_size(**densities, cohesion_force=WEAK_CONTACT_FORCE)
     coarsest = molerus_ca_size(**densities, cohesion_force=STRONG_CONTACT_FORCE)
     by_size = sign.size_score(diameter_sv=case.diameter_sv, finest_ca=finest, coarsest_ca=coarsest)

@@ -7,9 +7,11 @@ from numpy.typing import NDArray
 
 from psdflow.case import Array, Case
 from psdflow.fluidization import bed, bubbling, groups, regimes, slugging
+from psdflow.fluidization import spouting as spouted
 from psdflow.fluidization.expansion import bed_expansions
 from psdflow.fluidization.numbers import reynolds
 from psdflow.fluidization.terminal import terminal_velocity
+from psdflow.methods import in_range
 from psdflow.results import Findings
 
 GAS_ONLY = "applies to gas-fluidized beds; the fluid is a liquid"
@@ -40,7 +42,7 @@ def _solids_height(case: Case, found: Findings, settled: float) -> Array:
 
 def _pressure_drop(case: Case, found: Findings, solids: Array) -> None:
     value = bed.bed_pressure_drop(
-        bed_height=solids, voidage=0.0, particle_density=case.particle_density, fluid_density=case.fluid.density
+        bed_height=solids, voidage=0.0, particle_density=case.particle_density, fluid_density=case.fluid_density
     )
     note = "buoyant weight per area, level once the whole bed is fluidized"
     found.put("bed_pressure_drop", value * case.scatter("bed_pressure_drop", 0.05), "Pa", "bed-weight", note=note)
@@ -50,9 +52,13 @@ def gas_bed(case: Case, found: Findings) -> None:
     """Pressure drop, bubbles, slugging and height of a gas-fluidized bed."""
     vessel = case.duty.bed
     if vessel is None or vessel.settled_height is None:
-        found.miss("bed_pressure_drop expanded_height bubble_diameter u_ms_slug", NO_BED)
+        found.miss(
+            "bed_pressure_drop expanded_height bubble_diameter bubble_flow dense_flow bubble_rise_velocity bubble_fraction "
+            "u_ms_slug slug_kind",
+            NO_BED,
+        )
         return
-    diameter, velocity, u_mf = vessel.diameter.value, case.duty.velocity.value, found["u_mf"]
+    diameter, velocity, u_mf = vessel.diameter.value, case.velocity, found["u_mf"]
     solids = _solids_height(case, found, vessel.settled_height.value)
     height_mf = solids / (1 - found["voidage_mf"])
     _pressure_drop(case, found, solids)
@@ -75,8 +81,38 @@ def gas_bed(case: Case, found: Findings) -> None:
     size = np.minimum(size, bubbling.WIDEST_BUBBLE * diameter)
     note = "at the bed surface; none below u_mf"
     found.put("bubble_diameter", size, "m", "darton-1977", alternatives=every, note=note)
+    share = _visible_share(index)
+    _gas_split(case, found, size, share)
     _slugging(case, found, diameter, height_mf, largest)
     _height(case, found, height_mf, index, largest, orifice)
+
+
+def _visible_share(index: NDArray[np.intp]) -> Array:
+    """Share of the excess gas in visible bubbles by group; a group C bed, if it fluidizes, is taken as A."""
+    return bubbling.VISIBLE_FLOW_SHARE[np.maximum(index, groups.GROUPS.index("A"))]
+
+
+def _gas_split(case: Case, found: Findings, size: Array, share: Array) -> None:
+    """Two-phase split of the gas: what rises as bubbles, what passes through the dense bed, bubbles' speed and share."""
+    bed_diameter = case.duty.bed.diameter.value if case.duty.bed else np.inf
+    excess = np.maximum(case.velocity - found["u_mf"], 0.0)
+    visible = share * excess
+    rise = bubbling.bubble_rise_velocity(bubble_diameter=np.nan_to_num(size), bed_diameter=bed_diameter)
+    bubbles = np.isfinite(size)
+    found.put("bubble_flow", visible, "m/s", "two-phase", note="gas in bubbles, per bed area")
+    found.put("dense_flow", case.velocity - visible, "m/s", "two-phase", note="gas between the grains, per bed area")
+    found.put(
+        "bubble_rise_velocity", np.where(bubbles, excess + rise, np.nan), "m/s", "two-phase", note="at the surface"
+    )
+    fraction = bubbling.bubble_fraction(
+        velocity=case.velocity,
+        minimum_fluidization_velocity=found["u_mf"],
+        bubble_rise=rise,
+        visible_flow_share=share,
+    )
+    found.put(
+        "bubble_fraction", np.where(bubbles, fraction, 0.0), "share", "two-phase", note="of the bed, at the surface"
+    )
 
 
 def _slugging(case: Case, found: Findings, diameter: float, height_mf: Array, largest: Array) -> None:
@@ -92,8 +128,12 @@ def _slugging(case: Case, found: Findings, diameter: float, height_mf: Array, la
     )
     key = "baeyens-geldart-1974-slugging"
     value = np.where(slugs, every[key] * case.method_scatter("u_ms_slug", np.full((), key)), np.nan)
-    note = "none: the bed is too shallow for slugs or its bubbles stay too small"
-    found.put("u_ms_slug", value, "m/s", key, alternatives=every, note=note if not slugs.any() else "")
+    note = "where the bed is deep enough for slugs and its bubbles grow wide enough"
+    found.put("u_ms_slug", value, "m/s", key, alternatives=every, note=note)
+    kind = np.where(slugs, slugging.slug_kind(diameter=case.diameter_v, bed_diameter=diameter), "none")
+    found.put(
+        "slug_kind", kind, "word", "common practice", note="axial slugs fill the column, wall slugs ride on one side"
+    )
 
 
 def _height(
@@ -103,16 +143,16 @@ def _height(
     vessel = case.duty.bed
     if vessel is None:
         return
-    velocity, u_mf, u_mb = case.duty.velocity.value, found["u_mf"], found["u_mb"]
+    velocity, u_mf, u_mb = case.velocity, found["u_mf"], found["u_mb"]
     every = bed_expansions(
         velocity=velocity,
         minimum_fluidization_velocity=u_mf,
         bed_height_mf=height_mf,
         bed_diameter=vessel.diameter.value,
-        visible_flow_share=np.where(index == 0, bubbling.VISIBLE_FLOW_SHARE[1], bubbling.VISIBLE_FLOW_SHARE[index]),
+        visible_flow_share=_visible_share(index),
         diameter=case.diameter_v,
         particle_density=case.particle_density,
-        fluid_density=case.fluid.density,
+        fluid_density=case.fluid_density,
         orifice_area=orifice,
         largest_stable=largest,
     )
@@ -143,10 +183,10 @@ def liquid_bed(case: Case, found: Findings) -> None:
     """A liquid-fluidized bed: regime, Richardson & Zaki expansion, smooth or bubbling by Froude number."""
     found.miss(
         "group probability_a probability_b probability_c probability_d u_mb umb_umf_ratio u_c u_k u_se u_tr "
-        "u_ms_slug bubble_diameter",
+        "u_ms_slug slug_kind smooth_window bubble_diameter bubble_flow dense_flow bubble_rise_velocity bubble_fraction",
         GAS_ONLY,
     )
-    velocity, u_mf = case.duty.velocity.value, found["u_mf"]
+    velocity, u_mf = case.velocity, found["u_mf"]
     u_t = terminal_velocity(diameter=case.diameter_v, sphericity=case.sphericity, **case.grain)
     index = regimes.liquid_regime(velocity=velocity, minimum_fluidization_velocity=u_mf, terminal_velocity=u_t)
     found.put("regime", np.array(regimes.LIQUID_REGIMES)[index], "word", "regime bounds")
@@ -165,8 +205,8 @@ def liquid_bed(case: Case, found: Findings) -> None:
         reynolds_t=reynolds(
             velocity=u_t,
             length=case.diameter_v,
-            fluid_density=case.fluid.density,
-            fluid_viscosity=case.fluid.viscosity,
+            fluid_density=case.fluid_density,
+            fluid_viscosity=case.fluid_viscosity,
         )
     )
     voidage = bed.liquid_bed_voidage(
@@ -181,3 +221,43 @@ def liquid_bed(case: Case, found: Findings) -> None:
     note = "mean size only: a wide powder sorts itself by height"
     found.put("expanded_height", height, "m", "richardson-zaki-1954", note=note)
     found.warn(carried, "the liquid carries the mean grain out of the bed")
+
+
+def spouting(case: Case, found: Findings) -> None:
+    """Least velocity and greatest depth of a spouted bed, for a group D powder over a single inlet."""
+    vessel = case.duty.bed
+    keys = "u_spout_min height_spout_max"
+    if vessel is None or vessel.inlet_diameter is None or vessel.settled_height is None:
+        found.miss(
+            keys, "the duty's bed has no inlet_diameter: with a settled_height (spouted beds have one central inlet)"
+        )
+        return
+    shape: dict[str, Any] = {
+        "diameter": case.diameter_v,
+        "particle_density": case.particle_density,
+        "fluid_density": case.fluid_density,
+        "column_diameter": vessel.diameter.value,
+        "inlet_diameter": vessel.inlet_diameter.value,
+    }
+    coarse = found["group"] == "D"
+    least = spouted.minimum_spouting_velocity(bed_height=vessel.settled_height.value, **shape)
+    deepest = spouted.maximum_spoutable_height(fluid_viscosity=case.fluid_viscosity, **shape)
+    note = "for group D only"
+    for key, value, unit, method in (
+        ("u_spout_min", least, "m/s", "mathur-gishler-1955"),
+        ("height_spout_max", deepest, "m", "mcnab-bridgwater-1977"),
+    ):
+        scattered = value * case.method_scatter(key, np.full((), method))
+        inside = in_range(method, bed_diameter=vessel.diameter.value)
+        found.put(key, np.where(coarse, scattered, np.nan), unit, method, in_range=inside, note=note)
+    stable = spouted.stable_inlet(
+        diameter=case.diameter_v,
+        column_diameter=vessel.diameter.value,
+        inlet_diameter=vessel.inlet_diameter.value,
+    )
+    found.warn(coarse & ~stable, "the inlet is too wide for a stable spout: below 25 grains and 0.35 of the column")
+    found.warn(
+        coarse & (vessel.settled_height.value > deepest),
+        "the bed is deeper than the greatest spoutable depth ({depth:.2g} m): it fluidizes on top",
+        depth=deepest,
+    )

@@ -73,6 +73,20 @@ def can_slug(
     return deep & wide
 
 
+WALL_SLUG_GRAIN, WALL_SLUG_COLUMN = 500e-6, 0.10  # m
+
+
+def slug_kind(*, diameter: ArrayLike, bed_diameter: ArrayLike) -> NDArray[np.str_]:
+    """``axial`` in columns up to 0.1 m with grains up to 500 µm, else ``wall``. Common practice, no source.
+
+    Fine grains in narrow smooth columns make round-nosed slugs on the axis; coarse or angular grains and wider
+    columns send them up one side. Sizes in m.
+    """
+    narrow = np.asarray(bed_diameter, float) <= WALL_SLUG_COLUMN
+    fine = np.asarray(diameter, float) <= WALL_SLUG_GRAIN
+    return np.where(narrow & fine, "axial", "wall")
+
+
 def slugging_bed_height_ratio(
     *, velocity: ArrayLike, minimum_fluidization_velocity: ArrayLike, bed_diameter: ArrayLike
 ) -> NDArray[np.float64]:

@@ -7,11 +7,14 @@ from numpy.typing import ArrayLike
 
 from psdflow.case import Array, Case
 from psdflow.fluidization import bubbling, groups, minimum, regimes
-from psdflow.fluidization.bed_stage import gas_bed, liquid_bed
+from psdflow.fluidization.bed_stage import gas_bed, liquid_bed, spouting
 from psdflow.fluidization.numbers import archimedes, reynolds, velocity_scale
 from psdflow.fluidization.terminal import DEFAULT_LAW, terminal_velocity
 from psdflow.methods import in_range
 from psdflow.results import Findings
+
+# Segregation is usually negligible below a size ratio of 3 and serious above 8 (common practice, no source).
+SEGREGATING_RATIO, SEGREGATING_SPREAD = 8.0, 8.0
 
 
 def fluidization_stage(case: Case, found: Findings) -> None:
@@ -27,17 +30,18 @@ def fluidization_stage(case: Case, found: Findings) -> None:
         _minimum_bubbling(case, found)
         _transitions(case, found)
         gas_bed(case, found)
+        spouting(case, found)
         _regime(case, found)
 
 
 def _numbers(case: Case, found: Findings) -> None:
-    found.put("fluid_density", case.fluid.density, "kg/m^3", case.fluid.method)
-    found.put("fluid_viscosity", case.fluid.viscosity, "Pa.s", case.fluid.method)
+    found.put("fluid_density", case.fluid_density, "kg/m^3", case.fluid.method)
+    found.put("fluid_viscosity", case.fluid_viscosity, "Pa.s", case.fluid.method)
     ar = archimedes(diameter=case.diameter_sv, **case.grain)
     found.put("archimedes", ar, "1", "definition", note="with d_sv")
-    found.put("density_ratio", case.particle_density / case.fluid.density, "1", "definition")
+    found.put("density_ratio", case.particle_density / case.fluid_density, "1", "definition")
     found.put("d_star", np.cbrt(ar), "1", "definition", note="dimensionless diameter, Ar^(1/3)")
-    velocity = case.duty.velocity.value
+    velocity = case.velocity
     found.put("u_operating", velocity, "m/s", "given")
     found.put("u_star", velocity / velocity_scale(**case.grain), "1", "definition", note="dimensionless velocity")
 
@@ -45,7 +49,7 @@ def _numbers(case: Case, found: Findings) -> None:
 def _voidage(case: Case, found: Findings) -> None:
     """Voidage at minimum fluidization: measured, from the loose bulk density, or by correlation."""
     measured, loose = case.given("voidage_mf", low=0.2, high=0.95), case.given("loose_bulk_density")
-    ratio = case.particle_density / case.fluid.density
+    ratio = case.particle_density / case.fluid_density
     ar = archimedes(diameter=case.diameter_v, **case.grain)
     estimates = {
         "broadhurst-becker-1975-voidage": minimum.voidage_mf_broadhurst_becker(
@@ -116,8 +120,12 @@ def _onset(case: Case, found: Findings) -> None:
         in_range=_onset_in_range(case, found, best),
         alternatives=every,
     )
-    d90 = case.volume.percentile(0.9)
-    coarse = _recommended(case, d90, found)
+    fine = _recommended(case, case.volume.percentile(0.1), found)
+    begins = np.minimum(fine.value * scatter, u_mf)
+    inside = _onset_in_range(case, found, fine)
+    found.put("u_bf", begins, "m/s", fine.method, in_range=inside, note="u_mf of the d10 size: the fines move first")
+    end = case.duty.coarse_end.value
+    coarse = _recommended(case, case.volume.percentile(end), found)
     middles = np.sqrt(case.volume.edges[..., :-1] * case.volume.edges[..., 1:])
     others = {
         "knowlton-1977": minimum.complete_fluidization_knowlton(
@@ -133,13 +141,16 @@ def _onset(case: Case, found: Findings) -> None:
         coarse.method,
         in_range=_onset_in_range(case, found, coarse),
         alternatives=others,
-        note="u_mf of the d90 size: the coarse end moves",
+        note=f"u_mf of the d{end * 100:g} size: the coarse end moves",
     )
     ratio = found["u_cf"] / u_mf
+    spread = case.volume.percentile(0.9) / case.volume.percentile(0.1)
     found.warn(
-        ratio > 8,
-        "the size range is wide (u_cf / u_mf = {ratio:.0f}): the coarse end may settle out near u_mf",
+        (ratio > SEGREGATING_RATIO) | (spread > SEGREGATING_SPREAD),
+        "the size range is wide (u_cf / u_mf {ratio:.1f}, d90 / d10 {spread:.1f}): the bed may segregate, coarse grains "
+        "settling out near u_mf",
         ratio=ratio,
+        spread=spread,
     )
 
 
@@ -156,8 +167,8 @@ def _onset_in_range(case: Case, found: Findings, best: minimum.Recommended) -> A
             reynolds_mf=reynolds(
                 velocity=best.value,
                 length=taken,
-                fluid_density=case.fluid.density,
-                fluid_viscosity=case.fluid.viscosity,
+                fluid_density=case.fluid_density,
+                fluid_viscosity=case.fluid_viscosity,
             ),
             pressure=case.fluid.pressure,
         )
@@ -201,8 +212,8 @@ def _group(case: Case, found: Findings) -> None:
 def _minimum_bubbling(case: Case, found: Findings) -> None:
     every = bubbling.minimum_bubbling_velocities(
         diameter_sv=case.diameter_sv,
-        fluid_density=case.fluid.density,
-        fluid_viscosity=case.fluid.viscosity,
+        fluid_density=case.fluid_density,
+        fluid_viscosity=case.fluid_viscosity,
         fines_45um=case.fines_45um,
     )
     key = "abrahamsen-geldart-1980-umb"
@@ -211,6 +222,8 @@ def _minimum_bubbling(case: Case, found: Findings) -> None:
     u_mf = found["u_mf"]
     ratio = computed / u_mf
     found.put("umb_umf_ratio", ratio, "1", key, in_range=inside, note="below 1: bubbles as soon as it fluidizes")
+    note = "of velocities without bubbles, from u_mf to u_mb; none for groups B and D"
+    found.put("smooth_window", np.maximum(computed - u_mf, 0.0), "m/s", key, in_range=inside, note=note)
     note = "bubbles from u_mf on where the formula gives less than u_mf"
     found.put("u_mb", np.maximum(computed, u_mf), "m/s", key, in_range=inside, alternatives=every, note=note)
 
@@ -236,7 +249,7 @@ def _transitions(case: Case, found: Findings) -> None:
 def _regime(case: Case, found: Findings) -> None:
     slug = found.get("u_ms_slug")
     index = regimes.regime(
-        velocity=case.duty.velocity.value,
+        velocity=case.velocity,
         minimum_fluidization_velocity=found["u_mf"],
         minimum_bubbling_velocity=found["u_mb"],
         turbulent_velocity=found["u_c"],
@@ -246,7 +259,7 @@ def _regime(case: Case, found: Findings) -> None:
     )
     note = "by u_mf, u_cf, u_mb, u_c and u_se; published transition lines differ by a factor of two"
     found.put("regime", np.array(regimes.REGIMES)[index], "word", "regime bounds", note=note)
-    velocity = case.duty.velocity.value
+    velocity = case.velocity
     found.warn(velocity < found["u_mf"], "the operating velocity is below u_mf: the bed does not fluidize")
     found.warn(
         (velocity >= found["u_mf"]) & (velocity < found["u_cf"]),
