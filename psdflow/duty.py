@@ -170,3 +170,22 @@ class Duty(Document):
         if self.cyclones and self.bed is None:
             raise InputError("bed: missing; its diameter gives the gas flow to the cyclones")
         return self
+
+    def at(self, name: Literal["velocity", "temperature", "pressure"], value: float) -> "Duty":
+        """The same duty at another velocity (m/s), temperature (K) or absolute pressure (Pa).
+
+        Raises
+        ------
+        InputError
+            The fluid can't have that state, or was given by its density and viscosity.
+        """
+        fields = {key: getattr(self, key) for key in self.model_fields_set}
+        if name == "velocity":
+            return Duty(**{**fields, "velocity": Measured(value, self.velocity.tolerance)})
+        state = self.fluid
+        if state.density is not None:
+            raise InputError(f"{name}: the fluid is given by density and viscosity, so its {name} can't be changed")
+        old: Measured | None = getattr(state, name)
+        given = {key: getattr(state, key) for key in state.model_fields_set}
+        changed = FluidState(**{**given, name: Measured(value, old.tolerance if old else None)})
+        return Duty(**{**fields, "fluid": changed})

@@ -1,6 +1,7 @@
 """What the cyclones keep and what is lost: the stages in series, each fed with what the one before let through."""
 
 import numpy as np
+from numpy.typing import NDArray
 
 from psdflow.carryover import cyclone_models as models
 from psdflow.carryover.cyclone import (
@@ -18,6 +19,8 @@ from psdflow.duty import Cyclone
 from psdflow.results import Findings
 from psdflow.units import NORMAL_TEMPERATURE, STANDARD_ATMOSPHERE
 
+LOADING_DOUBT = 0.5  # standard deviation of ln(critical loading): its constant is in doubt. Judgement
+
 
 def geometry_of(cyclone: Cyclone) -> CycloneGeometry:
     """The shape a duty's cyclone entry stands for."""
@@ -33,7 +36,8 @@ def cyclone_stage(case: Case, found: Findings, fine: SizeDistribution, size: Arr
     bed = case.duty.bed
     assert bed is not None
     velocity, area = case.velocity, np.pi / 4 * bed.diameter.value**2
-    penetration = np.ones_like(flux)
+    penetration, unloaded = np.ones_like(flux), np.ones_like(flux)
+    sound: NDArray[np.bool_] = np.array(True)
     total_drop: Array = np.asarray(0.0)
     for number, entry in enumerate(case.duty.cyclones, start=1):
         suffix = "" if number == 1 else f"_{number}"
@@ -41,11 +45,11 @@ def cyclone_stage(case: Case, found: Findings, fine: SizeDistribution, size: Arr
         cut, slope = _cut(case, found, shape, flow, suffix)
         entering = flux * penetration
         passed = 1 - models.grade_efficiency(size=size, cut=cut, slope=slope)
-        passed = _loaded(case, fine, entering, passed, cut, velocity)
-        penetration = penetration * passed
+        unloaded = unloaded * passed
+        penetration = penetration * _loaded(case, fine, entering, passed, cut, suffix)
         total_drop = total_drop + _pressure_drop(case, found, shape, flow, suffix)
-        _inlet(found, shape, flow, suffix, number)
-    _losses(case, found, fine, flux, penetration, parts)
+        sound = sound & _inlet(found, shape, flow, suffix, number)
+    _losses(case, found, fine, flux, penetration, unloaded, sound, parts)
     if len(case.duty.cyclones) > 1:
         found.put("cyclone_pressure_drop_total", total_drop, "Pa", "sum of the stages")
 
@@ -61,13 +65,14 @@ def _cut(case: Case, found: Findings, shape: CycloneGeometry, flow: Array, suffi
     return cut, np.broadcast_to(models.grade_slope(key, geometry=shape, cut=cut), case.shape)
 
 
-def _loaded(case: Case, fine: SizeDistribution, entering: Array, passed: Array, cut: Array, velocity: Array) -> Array:
+def _loaded(case: Case, fine: SizeDistribution, entering: Array, passed: Array, cut: Array, suffix: str) -> Array:
     """Penetration with what drops out at once because the gas can't carry it through the vortex."""
     from psdflow.carryover.stage import median_size
 
-    loading = entering.sum(axis=-1) / (velocity * case.fluid_density)
+    loading = entering.sum(axis=-1) / (case.velocity * case.fluid_density)
     median = np.nan_to_num(median_size(fine, entering), nan=1.0)
     limit = models.critical_loading(cut=cut, median_size=median, loading=loading)
+    limit = limit * case.scatter(f"critical loading{suffix}", LOADING_DOUBT)
     return models.penetration_with_loading(penetration=passed, loading=loading, limit=limit)
 
 
@@ -79,7 +84,8 @@ def _pressure_drop(case: Case, found: Findings, shape: CycloneGeometry, flow: Ar
     return found.put(f"cyclone_pressure_drop{suffix}", value, "Pa", key, alternatives=every, note=note)
 
 
-def _inlet(found: Findings, shape: CycloneGeometry, flow: Array, suffix: str, number: int) -> None:
+def _inlet(found: Findings, shape: CycloneGeometry, flow: Array, suffix: str, number: int) -> NDArray[np.bool_]:
+    """Inlet velocity with advice; whether it is one at which cyclones are run, so that the models hold."""
     inlet = flow / shape.inlet_area
     found.put(f"cyclone_inlet_velocity{suffix}", inlet, "m/s", "definition")
     found.warn(
@@ -90,31 +96,45 @@ def _inlet(found: Findings, shape: CycloneGeometry, flow: Array, suffix: str, nu
     )
     for doubt in shape_doubts(shape):
         found.warn(True, f"cyclone {number}: {doubt}")
+    return np.asarray((inlet >= LOWEST_INLET_VELOCITY) & (inlet <= HIGHEST_INLET_VELOCITY))
 
 
-def _losses(case: Case, found: Findings, fine: SizeDistribution, flux: Array, penetration: Array, parts: int) -> None:
-    """Efficiency of all stages together, what is lost an hour and a year, its size and concentration."""
+def _losses(
+    case: Case,
+    found: Findings,
+    fine: SizeDistribution,
+    flux: Array,
+    penetration: Array,
+    unloaded: Array,
+    sound: NDArray[np.bool_],
+    parts: int,
+) -> None:
+    """Efficiency of all stages together, what is lost an hour and a year, its size and concentration.
+
+    ``unloaded`` is the penetration by the grade curves alone; ``sound`` whether every inlet velocity is a usual one.
+    """
     from psdflow.carryover.stage import class_sum, median_size
 
     bed = case.duty.bed
     assert bed is not None
-    lost = flux * penetration
+    lost, area = flux * penetration, np.pi / 4 * bed.diameter.value**2
     carried, gone = flux.sum(axis=-1), lost.sum(axis=-1)
+    method, note = "cyclone-grade", "past the last cyclone; no leaks, no attrition"
     some = np.where(carried > 0, carried, np.nan)
-    method = "cyclone-grade"
-    found.put("cyclone_efficiency", 1 - gone / some, "share", method, note="of all stages, by mass")
-    rate = found.put(
-        "loss_rate", gone * np.pi / 4 * bed.diameter.value**2, "kg/s", method, note="past the last cyclone"
-    )
-    found.put("loss_d50", median_size(fine, lost), "m", method, note="volume-equivalent")
+    found.put("cyclone_efficiency", 1 - gone / some, "share", method, in_range=sound, note="of all stages, by mass")
+    plain = {"grade curve without loading effect": (flux * unloaded).sum(axis=-1) * area}
+    rate = found.put("loss_rate", gone * area, "kg/s", method, in_range=sound, alternatives=plain, note=note)
+    found.put("loss_d50", median_size(fine, lost), "m", method, in_range=sound, note="volume-equivalent")
     concentration = gone / case.velocity
-    found.put("loss_concentration", concentration, "kg/m^3", method, note="in the gas at bed conditions")
+    note = "in the gas at bed conditions"
+    found.put("loss_concentration", concentration, "kg/m^3", method, in_range=sound, note=note)
     if case.fluid.temperature is not None and case.fluid.pressure is not None:
         normal = case.fluid.temperature / NORMAL_TEMPERATURE * STANDARD_ATMOSPHERE / case.fluid.pressure
         note = "at 0 °C and 101.325 kPa, moist as it is"
-        found.put("loss_concentration_normal", concentration * normal, "kg/m^3", method, note=note)
+        found.put("loss_concentration_normal", concentration * normal, "kg/m^3", method, in_range=sound, note=note)
     if case.duty.operating_hours is not None:
-        found.put("loss_per_year", rate * case.duty.operating_hours.value, "kg", method, note="first-hours rate held")
+        note = "first-hours rate held"
+        found.put("loss_per_year", rate * case.duty.operating_hours.value, "kg", method, in_range=sound, note=note)
     share = np.where(gone > 0, gone, np.nan)[..., None]
     found.classes |= {
         "cyclone_efficiency": 1 - class_sum(penetration, parts) / parts,

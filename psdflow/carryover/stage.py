@@ -14,10 +14,11 @@ from psdflow.carryover.freeboard import disengaging_heights
 from psdflow.case import Array, Case
 from psdflow.distribution import SizeDistribution
 from psdflow.fluidization.terminal import size_with_terminal_velocity, terminal_velocity
-from psdflow.methods import in_range
+from psdflow.methods import distance_outside, in_range
 from psdflow.results import Findings
 
 LEAST_DOUBT = 0.5  # standard deviation of ln(flux) where the laws agree: a factor of 2.7 either way at 95 %
+NEARLY_AS_NEAR = 0.5  # ln units: laws this much further out of range than the nearest one are still combined
 FINENESS, MOST_PARTS = 60, 5  # sub-classes aimed at, the most a class is cut into: within 0.5 % of ten times as many
 RATES = "carryover_flux carryover_rate carryover_d50 tdh"
 LOSSES = (
@@ -140,14 +141,13 @@ def _flux(case: Case, found: Findings) -> Stream:
         minimum_fluidization_velocity=found["u_mf"][..., None],
         **{key: free[key] for key in case.grain},
     )
-    usable = _usable(case, fine, held, u_t < by_class, diameter)
+    usable, any_law = _usable(case, fine, held, u_t < by_class, diameter)
     chosen = {key: constants[key] for key in elutriation.DEFAULT_LAWS}
     constant = elutriation.combined_rate_constant(chosen, usable)
     totals = {key: (value * fine.shares).sum(axis=-1) for key, value in constants.items()}
     scatter = case.scatter("elutriation", _doubt(totals, usable))
     fluidized = np.where(velocity > found["u_mf"], 1.0, 0.0)
     flux = constant * fine.shares * (scatter * fluidized)[..., None]
-    any_law = np.any([np.broadcast_to(gate, case.shape) for gate in usable.values()], axis=0)
     total = found.put(
         "carryover_flux",
         flux.sum(axis=-1),
@@ -171,13 +171,16 @@ def _flux(case: Case, found: Findings) -> Stream:
 
 def _usable(
     case: Case, fine: SizeDistribution, size: Array, carried: NDArray[np.bool_], bed_diameter: float
-) -> dict[str, NDArray[np.bool_]]:
-    """Whether each law's published range covers the lot: by the geometric mean size of what can be carried."""
+) -> tuple[dict[str, NDArray[np.bool_]], NDArray[np.bool_]]:
+    """Which laws are combined, and whether any range covers the lot; by the mean size of what can be carried.
+
+    Those in range, else those nearest to it: a law far from its data says nothing.
+    """
     weight = fine.shares * carried
     total = weight.sum(axis=-1)
     mean = np.exp((weight * np.log(size)).sum(axis=-1) / np.where(total > 0, total, 1.0))
-    return {
-        key: in_range(
+    far = {
+        key: distance_outside(
             key,
             diameter=mean,
             velocity=case.velocity,
@@ -186,6 +189,9 @@ def _usable(
         )
         for key in elutriation.DEFAULT_LAWS
     }
+    nearest = np.min([np.broadcast_to(distance, case.shape) for distance in far.values()], axis=0)
+    reach = np.where(nearest > 0, nearest + NEARLY_AS_NEAR, 1e-12)
+    return {key: distance <= reach for key, distance in far.items()}, nearest <= 1e-12
 
 
 def _doubt(totals: dict[str, Array], usable: dict[str, NDArray[np.bool_]]) -> Array:

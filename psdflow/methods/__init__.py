@@ -67,8 +67,8 @@ def method(key: str) -> Method:
     return catalogue()[key]
 
 
-def in_range(key: str, **variables: ArrayLike | None) -> NDArray[np.bool_]:
-    """Whether a case lies inside a method's published range.
+def distance_outside(key: str, **variables: ArrayLike | None) -> NDArray[np.float64]:
+    """How far a case lies outside a method's published range, summed over the variables in ln units; 0 inside.
 
     Parameters
     ----------
@@ -77,14 +77,17 @@ def in_range(key: str, **variables: ArrayLike | None) -> NDArray[np.bool_]:
     **variables
         Values in SI units of every variable the method's ``ranges`` name, any broadcastable shapes;
         others are ignored. ``None`` means unknown: it can't put the case out of range.
-
-    Returns
-    -------
-    Boolean array of the broadcast shape.
     """
-    inside: NDArray[np.bool_] = np.array(True)
+    far: NDArray[np.float64] = np.zeros(())
     for name, (low, high) in method(key).ranges.items():
-        value = variables[name]
-        if value is not None:
-            inside = inside & (np.asarray(value) >= low) & (np.asarray(value) <= high)
-    return inside
+        given = variables[name]
+        if given is not None:
+            value = np.maximum(np.asarray(given, float), 1e-300)
+            below = np.log(low / value) if low > 0 else np.full(value.shape, -1.0)
+            far = far + np.maximum(np.maximum(below, np.log(value / high)), 0.0)
+    return far
+
+
+def in_range(key: str, **variables: ArrayLike | None) -> NDArray[np.bool_]:
+    """Whether a case lies inside a method's published range; parameters as `distance_outside`."""
+    return np.asarray(distance_outside(key, **variables) <= 1e-12)
