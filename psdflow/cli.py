@@ -86,6 +86,7 @@ def read(files: tuple[Path, ...], out: Path | None, **how: str | None) -> None:
 @click.option("--json", "json_to", metavar="FILE|-", help="Everything as JSON, to a file or to the terminal.")
 @click.option("--full", is_flag=True, help="The whole page of every lot, not only the overview.")
 @click.option("--draws", default=None, type=click.IntRange(0, 100_000), help="Draws behind the intervals; 0 for none.")
+@click.option("--quick", is_flag=True, help="No draws, so no intervals; the page says so.")
 @click.option("--seed", default=None, type=click.IntRange(0), help="Seed of the draws.")
 @_plainly
 def assess(
@@ -97,6 +98,7 @@ def assess(
     json_to: str | None,
     full: bool,
     draws: int | None,
+    quick: bool,
     seed: int | None,
     **how: str | None,
 ) -> None:
@@ -119,7 +121,7 @@ def assess(
                 unit,
                 lots=(report.lot,),
                 below=sizes,
-                draws=DEFAULT_DRAWS if draws is None else draws,
+                draws=0 if quick else DEFAULT_DRAWS if draws is None else draws,
                 seed=DEFAULT_SEED if seed is None else seed,
             )
         except InputError as error:
@@ -142,12 +144,15 @@ def _present(subjects: "list[Subject]", out: Path | None, json_to: str | None, f
         if json_to is not None:
             sheet.write_json(subjects, Path(json_to))
     if out is not None:
-        from psdflow.present.figures import distribution_figure, save, velocity_figure
+        from psdflow.present.figures import distribution_figure, pressure_drop_figure, save, velocity_figure
 
         stems = sheet.file_stems([subject.name for subject in subjects])
         for subject, stem in zip(subjects, stems, strict=True):
             sheet.write_csv(subject, out / f"{stem}-sheet.csv")
-            for name, draw in (("distribution", distribution_figure), ("velocities", velocity_figure)):
+            drawn = {"distribution": distribution_figure, "velocities": velocity_figure}
+            if "bed_pressure_drop" in subject.assessment:
+                drawn["pressure-drop"] = pressure_drop_figure
+            for name, draw in drawn.items():
                 figure = draw(subject.assessment, subject.lot)
                 for suffix in ("svg", "png"):
                     save(figure, out / f"{stem}-{name}.{suffix}")
@@ -160,6 +165,57 @@ def _reports(files: tuple[Path, ...], how: dict[str, str | None]) -> "list[Repor
 
     given: dict[str, Any] = {key: value for key, value in how.items() if value is not None}
     return [report for file in files for report in read_report(file, **given)]
+
+
+@main.command()
+@click.argument("file", type=click.Path(path_type=Path))
+@click.option("--material", required=True, type=click.Path(path_type=Path), help="What the powder is (YAML).")
+@click.option("--duty", required=True, type=click.Path(path_type=Path), help="Where it is fluidized (YAML).")
+@click.option("--over", "swept", required=True, nargs=2, metavar="WHAT FROM:TO",
+              help='velocity, temperature or pressure, and its range: velocity "0.05:0.8 m/s".')  # fmt: skip
+@click.option("--points", default=25, type=int, show_default=True, help="How many values.")
+@click.option("--margin", default=1.2, type=float, show_default=True, help="Lowest velocity over u_cf.")
+@click.option("--loss-limit", metavar="RATE", help='Most that may be lost, e.g. "2 kg/h".')
+@_reading_options
+@click.option("--out", type=click.Path(path_type=Path), help="Folder for the table (csv) and the figure.")
+@_plainly
+def sweep(
+    file: Path,
+    material: Path,
+    duty: Path,
+    swept: tuple[str, str],
+    points: int,
+    margin: float,
+    loss_limit: str | None,
+    out: Path | None,
+    **how: str | None,
+) -> None:
+    """The operating window of the lots in FILE over velocity, temperature or pressure."""
+    from rich.console import Console
+
+    from psdflow.duty import Duty
+    from psdflow.material import Material
+    from psdflow.present.sheet import file_stems
+    from psdflow.present.sweeping import sweep_page, write_sweep_csv
+    from psdflow.sweep import read_range
+    from psdflow.sweep import sweep as run
+    from psdflow.units import read_quantity
+
+    powder, unit = Material.load(material), Duty.load(duty)
+    over, (start, stop) = read_range(*swept)
+    limit = None if loss_limit is None else read_quantity(loss_limit, "mass rate").value
+    reports = _reports((file,), how)
+    for report, stem in zip(reports, file_stems([report.lot for report in reports]), strict=True):
+        found = run(report.distribution, powder, unit, over=over, start=start, stop=stop, points=points, margin=margin,
+                    loss_limit=limit, lot=report.lot)  # fmt: skip
+        Console(highlight=False).print(sweep_page(found))
+        if out is not None:
+            from psdflow.present.figures import save, sweep_figure
+
+            write_sweep_csv(found, out / f"{stem}-over-{over}.csv")
+            figure = sweep_figure(found)
+            for suffix in ("svg", "png"):
+                save(figure, out / f"{stem}-over-{over}.{suffix}")
 
 
 @main.command()

@@ -33,6 +33,8 @@ class Material(Document):
         kg/m³; their ratio is the Hausner ratio.
     voidage_mf
         Voidage at minimum fluidization, 0..1.
+    compacted_voidage
+        Voidage of the settled, vibrated bed before it is first loosened; gives the bump of the pressure-drop curve.
     moisture
         Mass fraction of water as received.
     angle_of_repose, flow_function
@@ -52,6 +54,7 @@ class Material(Document):
     loose_bulk_density: Density | None = None
     tapped_bulk_density: Density | None = None
     voidage_mf: Fraction | None = None
+    compacted_voidage: Fraction | None = None
     moisture: Fraction | None = None
     angle_of_repose: Angle | None = None
     flow_function: Number | None = None
@@ -100,6 +103,7 @@ _POSSIBLE = (
     ("sphericity", 0.05, 1.0),
     ("sieve_to_volume", 0.5, 2.0),
     ("voidage_mf", 0.2, 0.98),
+    ("compacted_voidage", 0.15, 0.98),
     ("moisture", -1e-12, 0.8),
     ("angle_of_repose", 0.0, 1.5708),
     ("flow_function", 0.0, 1000.0),

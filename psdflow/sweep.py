@@ -12,12 +12,14 @@ import numpy as np
 from numpy.typing import NDArray
 
 from psdflow.assessment import Assessment
+from psdflow.carryover.cyclone import HIGHEST_INLET_VELOCITY
 from psdflow.distribution import SizeDistribution
 from psdflow.duty import Duty
 from psdflow.errors import InputError
 from psdflow.material import Material
 from psdflow.pipeline import assess
 from psdflow.uncertainty import DEFAULT_SEED
+from psdflow.units import read_quantity
 
 Over = Literal["velocity", "temperature", "pressure"]
 
@@ -106,6 +108,25 @@ def sweep(
     return Sweep(over, made, window, lot)
 
 
+def read_range(what: str, text: str) -> tuple[Over, tuple[float, float]]:
+    """``velocity`` and ``"0.05:0.8 m/s"`` into the swept quantity and its SI range; a unit at the end serves both.
+
+    Raises
+    ------
+    InputError
+        Another quantity, or no range.
+    """
+    for over in ("velocity", "temperature", "pressure"):
+        if what == over:
+            ends = [end.strip() for end in text.split(":")]
+            if len(ends) != 2 or not all(ends):
+                raise InputError(f'--over {what}: found "{text}"; expected FROM:TO with a unit, like "0.05:0.8 m/s"')
+            unit = ends[1].lstrip("+-0123456789.,eE ")
+            first = ends[0] if ends[0].lstrip("+-0123456789.,eE ") else f"{ends[0]} {unit}"
+            return over, (read_quantity(first, over).value, read_quantity(ends[1], over).value)
+    raise InputError(f'--over: found "{what}"; expected velocity, temperature or pressure')
+
+
 def _point(value: float, found: Assessment) -> Point:
     rows = {row.key: row for row in found.rows()}
 
@@ -113,7 +134,7 @@ def _point(value: float, found: Assessment) -> Point:
         row = rows.get(key)
         return None if row is None or row.value is None else float(row.value)
 
-    shown = ("u_mf", "u_mb", "u_c", "u_se", "expanded_height", "carryover_flux", "tdh")
+    shown = ("u_mf", "u_mb", "u_c", "u_se", "expanded_height", "carryover_flux", "tdh", "loss_rate")
     outside = tuple(key for key in shown if key in rows and rows[key].in_range is False)
     ratio = float(found["u_operating"]) / float(found["u_mf"])
     return Point(
@@ -152,6 +173,13 @@ def _window(
     highest, safe = (_crossing(values, reaches, sure) for sure in (False, True))
     what = "loss" if key == "loss_rate" else "carryover"
     shown = f"{limit * 3600:.3g} kg/h"
+    end_of_models = _cyclone_limit(first)
+    if lowest < end_of_models < min(highest, float(values[-1])):
+        words = (
+            f"{start}; highest {end_of_models:.2g} m/s, where a cyclone's inlet passes {HIGHEST_INLET_VELOCITY:g} m/s and "
+            f"its models stop holding; the {what} is under {shown} up to there"
+        )
+        return Window(lowest, interval, end_of_models, min(safe, end_of_models), words)
     if np.isinf(highest):
         words = f"{start}; the {what} stays under {shown} over the whole sweep"
         return Window(lowest, interval, highest, safe, words)
@@ -160,6 +188,14 @@ def _window(
         return Window(lowest, interval, highest, safe, f"{start}; {end}")
     words = f"there is no window: {start}, but {end}; {_in_the_way(distribution, material, duty, lowest)}"
     return Window(lowest, interval, highest, safe, words)
+
+
+def _cyclone_limit(found: Assessment) -> float:
+    """Operating velocity at which the first cyclone inlet reaches the highest usual velocity; infinite without cyclones."""
+    inlets = [float(found[key]) for key in found.found.estimates if key.startswith("cyclone_inlet_velocity")]
+    if not inlets:
+        return np.inf
+    return float(found["u_operating"]) * HIGHEST_INLET_VELOCITY / max(inlets)
 
 
 def _crossing(values: NDArray[np.float64], reaches: Callable[..., bool], sure: bool) -> float:

@@ -4,7 +4,7 @@ Readable in grey: nothing is told by colour alone; lines carry their names inste
 """
 
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import matplotlib as mpl
 import numpy as np
@@ -14,8 +14,12 @@ from matplotlib.patheffects import withStroke
 from matplotlib.ticker import FuncFormatter, LogLocator, NullFormatter
 
 from psdflow.assessment import Assessment
-from psdflow.present.numerals import digits
+from psdflow.errors import InputError
+from psdflow.present.numerals import SWEPT, digits
 from psdflow.present.sheet import replacing
+
+if TYPE_CHECKING:
+    from psdflow.sweep import Sweep
 
 INK, SOFT, PALE, ACCENT = "#1d2733", "#6b7785", "#d4dae1", "#a8480f"
 STYLE: Any = {
@@ -133,6 +137,123 @@ def velocity_figure(assessment: Assessment, lot: int = 0) -> Figure:
         axes.set_xlabel("velocity, m/s (bar: 95 % interval; hollow: outside the method's range)", x=0, ha="left")
         axes.set_title(assessment.lots[lot], loc="left", fontsize=10, fontweight="bold")
         return figure
+
+
+def pressure_drop_figure(assessment: Assessment, lot: int = 0) -> Figure:
+    """Pressure drop as the gas is turned up (full line) and down (dashed), u_mf and the operating velocity marked.
+
+    Raises
+    ------
+    InputError
+        The duty has no bed height, so there is no weight to carry.
+    """
+    from psdflow.fluidization.curve import COMPACTION, pressure_drop_curve
+
+    if "bed_pressure_drop" not in assessment:
+        raise InputError("the pressure-drop curve needs a bed with diameter and settled_height")
+    at = assessment.index(lot)
+    value = {key: float(assessment[key][at]) for key in ("u_mf", "bed_pressure_drop", "voidage_mf", "d_sv")}
+    given = assessment.material.compacted_voidage
+    compacted = given.value if given else value["voidage_mf"] - COMPACTION
+    velocity = np.linspace(0, 3 * value["u_mf"], 400)[1:]
+    fluid = assessment.duty.fluid.resolved
+    curve = pressure_drop_curve(
+        velocity=velocity,
+        minimum_fluidization_velocity=value["u_mf"],
+        bed_weight=value["bed_pressure_drop"],
+        voidage_mf=value["voidage_mf"],
+        compacted_voidage=compacted,
+        diameter_sv=value["d_sv"],
+        fluid_density=fluid.density,
+        fluid_viscosity=fluid.viscosity,
+    )
+    with mpl.rc_context(STYLE):
+        figure = Figure(figsize=(6.4, 3.8), layout="constrained")
+        axes = figure.subplots()
+        axes.plot(velocity, curve.rising / 1000, color=INK, linewidth=1.6)
+        axes.plot(velocity, curve.falling / 1000, color=INK, linewidth=1.2, linestyle=(0, (4, 2)))
+        top, weight = float(curve.rising.max()) / 1000, value["bed_pressure_drop"] / 1000
+        said = "given" if given else "assumed"
+        axes.annotate(f"turned up, packed to voidage {compacted:.2f} ({said})", (value["u_mf"], top), xytext=(8, 2),
+                      textcoords="offset points", fontsize=8)  # fmt: skip
+        half = 0.5 * value["u_mf"]
+        axes.annotate("turned down", (half, float(np.interp(half, velocity, curve.falling)) / 1000), xytext=(8, -8),
+                      textcoords="offset points", fontsize=8)  # fmt: skip
+        axes.annotate(f"weight of the bed {digits(weight)} kPa", (velocity[-1], weight), xytext=(0, -12), ha="right",
+                      textcoords="offset points", fontsize=8)  # fmt: skip
+        axes.axvline(value["u_mf"], color=SOFT, linewidth=0.8)
+        axes.annotate(f"u_mf {digits(value['u_mf'])} m/s", (value["u_mf"], 0), xytext=(4, 4), fontsize=8,
+                      textcoords="offset points", color=SOFT)  # fmt: skip
+        axes.set_xlim(0, velocity[-1])
+        axes.set_ylim(0, top * 1.15)
+        axes.set_xlabel("superficial velocity, m/s")
+        axes.set_ylabel("pressure drop of the bed, kPa")
+        axes.set_title(assessment.lots[lot], loc="left", fontsize=10, fontweight="bold")
+        return figure
+
+
+def sweep_figure(swept: "Sweep") -> Figure:
+    """Regime, u/u_mf, height of the bed, carryover and loss over the swept quantity; the operating window shaded."""
+    name, unit, factor, offset = SWEPT[swept.over]
+    x = np.array([point.value for point in swept.points]) * factor + offset
+    panels: list[tuple[str, list[float | None], bool]] = [
+        ("u / u_mf", [point.velocity_ratio for point in swept.points], True)
+    ]
+    if any(point.height is not None for point in swept.points):
+        panels.append(("bed height, m", [point.height for point in swept.points], False))
+    if any(point.carryover_rate for point in swept.points):
+        panels.append(("carried, kg/h", [_hourly(point.carryover_rate) for point in swept.points], True))
+    if any(point.loss_rate for point in swept.points):
+        panels.append(("lost, kg/h", [_hourly(point.loss_rate) for point in swept.points], True))
+    with mpl.rc_context(STYLE):
+        figure = Figure(figsize=(6.8, 1.5 * len(panels) + 1.2), layout="constrained")
+        rows = figure.subplots(len(panels), 1, sharex=True, squeeze=False)[:, 0]
+        for axes, (label, values, log) in zip(rows, panels, strict=True):
+            y = np.array([np.nan if value is None else value for value in values], float)
+            axes.plot(x, np.where(y > 0, y, np.nan), color=INK, linewidth=1.4, marker="o", markersize=3)
+            if log:
+                axes.set_yscale("log")
+            axes.set_ylabel(label, fontsize=8)
+            axes.grid(axis="y", color=PALE, linewidth=0.6)
+        _regime_bands(rows, x, [point.regime for point in swept.points])
+        _window_shade(rows, swept)
+        if swept.over != "temperature":
+            _plain_log(rows[-1], (1, 2, 5) if x[-1] / x[0] < 300 else (1,))
+        rows[-1].set_xlim(x[0], x[-1])
+        rows[-1].set_xlabel(f"{name}, {unit}")
+        rows[0].set_title(swept.lot, loc="left", fontsize=10, fontweight="bold", pad=24)
+        return figure
+
+
+def _hourly(rate: float | None) -> float | None:
+    return None if rate is None else rate * 3600
+
+
+def _regime_bands(rows: Any, x: Any, regimes: list[str]) -> None:
+    """A line wherever the regime changes, its name written above the stretch."""
+    starts = [0, *(i for i in range(1, len(regimes)) if regimes[i] != regimes[i - 1])]
+    for number, start in enumerate(starts):
+        stop = starts[number + 1] if number + 1 < len(starts) else len(x) - 1
+        if start:
+            for axes in rows:
+                axes.axvline(x[start], color=SOFT, linewidth=0.7, linestyle=(0, (1, 2)))
+        place = np.sqrt(x[start] * x[stop]) if x[0] > 0 else (x[start] + x[stop]) / 2
+        text = regimes[start].replace(" fluidization", "").replace("fast or transport", "fast")
+        rows[0].annotate(text, (place, 1.0), xycoords=("data", "axes fraction"), xytext=(0, 3 + 10 * (number % 2)),
+                         textcoords="offset points", ha="center", fontsize=7.5, color=SOFT)  # fmt: skip
+
+
+def _window_shade(rows: Any, swept: "Sweep") -> None:
+    """The operating window between its two ends, if there is one."""
+    window = swept.window
+    if window is None or not window.highest > window.lowest:
+        return
+    end = min(window.highest, swept.points[-1].value)
+    for axes in rows:
+        axes.axvspan(window.lowest, end, facecolor="none", edgecolor=ACCENT, hatch="...", alpha=0.35, linewidth=0)
+        axes.axvline(window.lowest, color=ACCENT, linewidth=1.2)
+        if end < swept.points[-1].value:
+            axes.axvline(end, color=ACCENT, linewidth=1.2)
 
 
 def save(figure: Figure, path: Path) -> None:

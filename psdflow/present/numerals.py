@@ -16,6 +16,13 @@ _FRIENDLY: dict[str, tuple[str, float]] = {
 _IN_METRES = ("tdh", "expanded_height", "bubble_diameter", "height_spout_max")
 _PER_CENT = ("share", "below_", "probability", "cyclone_efficiency")
 
+# Name, unit, factor and offset of a swept quantity for people.
+SWEPT = {
+    "velocity": ("superficial velocity", "m/s", 1.0, 0.0),
+    "temperature": ("temperature", "°C", 1.0, -273.15),
+    "pressure": ("pressure, absolute", "bar", 1e-5, 0.0),
+}
+
 
 class Friendly(NamedTuple):
     """A unit for people and the factor from SI."""
