@@ -118,7 +118,8 @@ class Case:
     def particle_density(self) -> Array:
         """kg/m³."""
         given = self.material.particle_density
-        return self._property("particle_density", given, PROPERTY_SD["particle_density"] * given.value, 1.0, np.inf)
+        sinks = 1.005 * self.fluid.density  # it was seen to sink: no draw floats
+        return self._property("particle_density", given, PROPERTY_SD["particle_density"] * given.value, sinks, np.inf)
 
     @cached_property
     def sphericity(self) -> Array:

@@ -17,7 +17,7 @@ from psdflow.distribution import SizeDistribution
 from psdflow.sizes.open_ends import moved_ends
 
 COVERAGE = 0.95
-DEFAULT_DRAWS = 2000
+DEFAULT_DRAWS = 4000  # ends of intervals good to the second digit (tests/test_assess.py)
 DEFAULT_SEED = 20
 
 # Standard deviations of ln(size) of one report: of all sizes together, and added at x10 and x90.
