@@ -37,16 +37,16 @@ def fitted(report: Report) -> RenderableType:
     """The published distributions fitted to a report, the best first."""
     from psdflow.sizes.fits import fit_distribution
 
-    table = Table(box=None, pad_edge=False, padding=(0, 3, 0, 0), header_style="dim")
-    for name in ("fitted model", "size parameter", "shape parameter", "largest miss", "r²"):
-        table.add_column(name)
+    table = Table(box=None, pad_edge=False, padding=(0, 2, 0, 0), header_style="dim")
+    for name in ("fitted model", "size", "shape", "max miss %", "r²"):
+        table.add_column(name, no_wrap=True)
     for fit in fit_distribution(report.distribution):
         model = fit.model
         table.add_row(
             model.name,
             f"{model.size_name} = {digits(fit.size * 1e6)} µm",
             f"{model.shape_name} = {digits(fit.shape)}",
-            f"{fit.max_error * 100:.1f} % of the powder",
+            f"{fit.max_error * 100:.1f}",
             f"{fit.r_squared:.4f}",
         )
     return Group(Padding(table, (0, 0, 0, 2)), Text(""))

@@ -46,7 +46,7 @@ class Model:
 
 MODELS: dict[str, Model] = {
     "rrsb": Model("Rosin–Rammler–Sperling–Bennett", rrsb, "x'", "n"),
-    "log-normal": Model("log-normal", log_normal, "x50", "geometric s.d."),
+    "log-normal": Model("log-normal", log_normal, "x50", "σ_g"),
     "ggs": Model("Gates–Gaudin–Schuhmann", ggs, "k", "m"),
 }
 
