@@ -12,21 +12,10 @@ from psdflow.reports.cells import Grid
 from psdflow.reports.layout import Layout
 from psdflow.reports.meaning import field_of
 from psdflow.reports.numerals import LENGTHS, Cell, Decimal, numeral, plain
+from psdflow.reports.percentile_labels import counts_grains, field_split, no_sample, percentile_label, rejoined
 from psdflow.reports.report import Options, Report
 from psdflow.reports.samples import strip_word
-from psdflow.reports.words import AVERAGE, LASER, LOT, SAMPLE, SIEVE, UNUSED, heading, name_left
-
-# "d10", "x 50", "D(0.9)", "d[v,0.5]", "dv90", "D50 (µm)", "x10,3"; and the means "d32", "D[4,3]".
-_LABEL = re.compile(
-    r"[dx] ?[_ ]?(?P<basis>[vn])? ?[\[(_]? ?(?:(?P<inner>[vn]) ?[,_ ] ?)?"
-    r"(?:(?P<mean>[34] ?[.,]? ?[23])|0?[.,](?P<part>\d{1,2})|(?P<percent>\d{1,2})(?:,(?P<r>[0-3]))?)(?!\d) ?[\])]?(?: .*|[\[(,].*)?"
-)
-_MEANS = {"32": "d32", "43": "d43"}
-_OPENED, _CLOSED = re.compile(r".*[dx] ?[\[(] ?[vn\d]", re.IGNORECASE), re.compile(r"\d[.,]?\d* ?[\])].*")
-_COUNTED = re.compile(
-    r"(?<![a-z])(?:number[ -](?:based|basis|weighted|distribution|percent|%)|(?:by|on) number|q0|anzahlverteilung|anzahlbezogen|en nombre|en numero)"
-)
-_SAUTER, _MEDIAN = re.compile(r"sauter.*"), re.compile(r"(?:median\w*|mediane|mediana)(?: .*)?")
+from psdflow.reports.words import LASER, LOT, SAMPLE, SIEVE, heading, name_left
 
 
 @dataclass
@@ -49,27 +38,6 @@ class Percentiles:
         return dict(sorted((k, v) for k, v in self.stated.items() if isinstance(k, str)))
 
 
-def percentile_label(cell: Cell) -> float | str | None:
-    """The share of a percentile's label, "d32" or "d43", or None; "number" if it says it counts grains."""
-    if not isinstance(cell, str) or not cell or len(cell) > 60:
-        return None
-    text = plain(cell)
-    if _SAUTER.fullmatch(text):
-        return "d32"
-    if _MEDIAN.fullmatch(text):
-        return 0.5
-    match = _LABEL.fullmatch(text)
-    if match is None:
-        return None
-    if match["mean"]:
-        return _MEANS.get(re.sub(r"\D", "", match["mean"]))
-    if "n" in (match["basis"], match["inner"]) or match["r"] in ("0", "1", "2"):
-        return "number"
-    part = match["part"]
-    share = float(f"0.{part}") if part else float(match["percent"]) / 100
-    return share if 0 < share < 1 else None
-
-
 def find_percentiles(grid: Grid, decimal: Decimal, size_unit: str | None) -> list[Percentiles]:
     """Every sample whose percentiles stand in a grid, in rows, columns or fields.
 
@@ -85,9 +53,9 @@ def find_percentiles(grid: Grid, decimal: Decimal, size_unit: str | None) -> lis
     counted = False
     named: int | None = None
     for i, cells in enumerate(grid.rows):
-        row = _field_split(_rejoined(cells))
+        row = field_split(rejoined(cells))
         labels = {j: label for j, cell in enumerate(row) if (label := percentile_label(cell)) is not None}
-        counted |= any(isinstance(c, str) and bool(_COUNTED.search(plain(c))) for c in row)
+        counted |= counts_grains(row)
         if labels and ("number" in labels.values() or counted):
             raise InputError(
                 f"{grid.where(i)}: percentiles of numbers of grains can't be turned into volume; "
@@ -98,7 +66,7 @@ def find_percentiles(grid: Grid, decimal: Decimal, size_unit: str | None) -> lis
             heads, columns, named = labels, {}, _name_column(row)
         elif heads and not labels and any(j in heads and numeral(row[j], decimal) for j in filled):
             name = str(row[named]) if named is not None and named < len(row) and named not in heads else ""
-            if _no_sample(name):
+            if no_sample(name):
                 continue
             sample = Percentiles(name, i)
             for j, label in heads.items():
@@ -112,7 +80,7 @@ def find_percentiles(grid: Grid, decimal: Decimal, size_unit: str | None) -> lis
                 if numeral(row[j], decimal) is None:
                     continue
                 over = str(above[j]) if j < len(above) else ""
-                if _no_sample(over):
+                if no_sample(over):
                     continue  # a specification or a spread beside the sizes
                 if j not in columns:
                     columns[j] = Percentiles(strip_word(name_left(over))[0], i, j)
@@ -129,33 +97,6 @@ def find_percentiles(grid: Grid, decimal: Decimal, size_unit: str | None) -> lis
     return [sample for sample in found if len(sample.sizes) >= 2]
 
 
-def _rejoined(row: list[Cell]) -> list[Cell]:
-    """A row in which "D[3,2]" was split at its comma, put together again."""
-    joined: list[Cell] = []
-    for cell in row:
-        before = joined[-1] if joined else ""
-        if isinstance(cell, str) and isinstance(before, str) and _OPENED.fullmatch(before) and _CLOSED.fullmatch(cell):
-            joined[-1] = f"{before},{cell}"
-        else:
-            joined.append(cell)
-    return joined
-
-
-def _field_split(row: list[Cell]) -> list[Cell]:
-    """ "D10: 12.3 µm" in one cell becomes two."""
-    first = next((cell for cell in row if cell != ""), "")
-    if isinstance(first, str) and ":" in first and percentile_label(first.split(":")[0]) is not None:
-        head, _, value = first.partition(":")
-        return [head.strip(), *([value.strip()] if value.strip() else []), *[c for c in row[1:] if c != ""]]
-    return row
-
-
-def _no_sample(name: str) -> bool:
-    """Whether a row or column is an average, a spread or a limit by its name."""
-    text = plain(name)
-    return bool(UNUSED.search(text) or AVERAGE.fullmatch(text))
-
-
 def _name_column(row: list[Cell]) -> int | None:
     """The column of lot or sample names beside headers of percentiles, else the first."""
     texts = [plain(str(cell)) for cell in row]
@@ -166,7 +107,7 @@ def _over(grid: Grid, row: int, column: int) -> str:
     """The headers over a column: the row of labels and a row of units below it."""
     parts = []
     for i in range(max(row - 30, 0), row):
-        cells = _rejoined(grid.rows[i])
+        cells = rejoined(grid.rows[i])
         text = str(cells[column]) if column < len(cells) else ""
         if text and not text[0].isdigit():
             parts.append(text)

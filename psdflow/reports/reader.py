@@ -2,7 +2,6 @@
 
 from collections.abc import Callable, Iterable
 from dataclasses import replace
-from itertools import pairwise
 from pathlib import Path
 from typing import Any, Literal, cast, get_args
 
@@ -14,6 +13,7 @@ from psdflow.reports.around import stray_rows
 from psdflow.reports.canonical import is_canonical, read_canonical
 from psdflow.reports.cells import Grid, read_bytes, read_grids
 from psdflow.reports.classes import averaged
+from psdflow.reports.continued import inherit_headers, no_broken_table
 from psdflow.reports.laser import laser_classes
 from psdflow.reports.layout import Layout, Table
 from psdflow.reports.meaning import basis_note, basis_of, charge_of, kind_of, names_of, sample_mass_of
@@ -178,9 +178,9 @@ def _read_grids(grids: Iterable[Grid], source: str, options: Options) -> list[Re
         percentiles |= (
             len(tables) < len(layout.tables) or sum(bool(STATISTIC.fullmatch(plain(k))) for k in layout.fields) > 1
         )
-        _inherit_headers(tables)
+        inherit_headers(tables)
         found: list[tuple[Table, Sample]] = [(t, s) for t in tables for s in recognise(t, options, decimal)]
-        _no_broken_table(found)
+        no_broken_table(found)
         layout.fields = {**shared, **layout.fields}
         layout.titles += shared_titles
         many_sheets = sum(bool(other.tables) for _, _, other in layouts) > 1
@@ -201,39 +201,6 @@ def _read_grids(grids: Iterable[Grid], source: str, options: Options) -> list[Re
             "under a header that names them with units"
         )
     return _distinct(reports)
-
-
-def _inherit_headers(tables: list[Table]) -> None:
-    """A further block without headers of its own has those of the block above, if it is as wide."""
-    for before, table in pairwise(tables):
-        wordless = not any(table.headers)
-        if wordless and not table.across and not before.across and len(before.headers) == len(table.headers):
-            table.headers = list(before.headers)
-
-
-def _no_broken_table(found: list[tuple[Table, Sample]]) -> None:
-    """Refuse a table that goes on below a line of text as if it were another sample."""
-    for (table, one), (below, two) in pairwise(found):
-        if table is below or table.across or below.across or one.sizes.has_pan:
-            continue
-        sizes = [[c.low or c.high or 0.0 for c in s.sizes.cells if c.low or c.high] for s in (one, two)]
-        finer, coarser = (two, one) if max(sizes[1]) <= min(sizes[0]) else (one, two)
-        apart = max(sizes[1]) <= min(sizes[0]) or min(sizes[1]) >= max(sizes[0])
-        if apart and (not below.title or below.headers == table.headers) and _goes_on(finer, coarser):
-            raise InputError(
-                f"{below.where(0)}: these sizes go on from the table above; remove the lines between if it is one table, "
-                "else give each table its own pan row"
-            )
-
-
-def _goes_on(finer: Sample, coarser: Sample) -> bool:
-    """Whether two tables can be one: shares in class, or cumulative values that run on from one to the other."""
-    for role in ("under", "over"):
-        if role in finer.quantities and role in coarser.quantities:
-            last = [v for v in finer.quantities[role].values if v is not None]
-            first = [v for v in coarser.quantities[role].values if v is not None]
-            return bool(last and first) and (last[-1] <= first[0] if role == "under" else last[-1] >= first[0])
-    return True
 
 
 def _report(

@@ -8,7 +8,7 @@ import pytest
 from psdflow import Duty, Material, SizeDistribution, assess
 from psdflow.errors import InputError
 from psdflow.reports import read
-from psdflow.reports.percentiles import percentile_label
+from psdflow.reports.percentile_labels import percentile_label
 from psdflow.sizes import statistics as st
 from psdflow.sizes.open_ends import with_open_ends
 from psdflow.sizes.reconstruct import reconstructed
