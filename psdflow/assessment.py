@@ -15,6 +15,9 @@ from psdflow.material import Material
 from psdflow.results import Findings, source_of
 from psdflow.uncertainty import interval
 
+# What a reconstructed report doesn't touch.
+_NOT_FROM_SIZES = ("fluid_density", "fluid_viscosity", "density_ratio", "u_operating", "hausner_ratio")
+RECONSTRUCTED = "reconstructed from percentiles"
 # Probabilities are shares of the draws, so their value is the mean over them and they have no interval.
 _PROBABILITIES = ("probability_a", "probability_b", "probability_c", "probability_d", "cohesion_probability")
 
@@ -99,6 +102,10 @@ class Assessment:
         """What can hurt."""
         return cautions(self.duty)
 
+    @property
+    def _reconstructed(self) -> NDArray[np.bool_]:
+        return np.broadcast_to(np.asarray(self.distribution.quality.reconstructed), self.found.shape)
+
     def index(self, lot: int) -> tuple[int, ...]:
         """Where lot number ``lot`` stands in the arrays."""
         return (lot,) if self.found.shape else ()
@@ -117,14 +124,17 @@ class Assessment:
         value, method = estimate.value[index], str(estimate.method[index])
         unit = {"share": "1", "word": ""}.get(estimate.unit, estimate.unit)
         inside, source = bool(estimate.in_range[index]), source_of(method)
+        note = estimate.note
+        if key not in _NOT_FROM_SIZES and self._reconstructed[index]:
+            note = f"{note}; {RECONSTRUCTED}" if note else RECONSTRUCTED
         if estimate.unit == "word":
-            return Row(key, str(value), None, None, unit, method, source, inside, estimate.note)
+            return Row(key, str(value), None, None, unit, method, source, inside, note)
         if not np.isfinite(value):
             return Row(key, None, None, None, unit, method, source, None, estimate.note or "no value here")
         low, high = (_end(ends, key, index) for ends in (self.low, self.high))
         if low == high:  # a given value: the draws don't move it
             low = high = None
-        return Row(key, float(value), low, high, unit, method, source, inside, estimate.note)
+        return Row(key, float(value), low, high, unit, method, source, inside, note)
 
     def warnings(self, lot: int = 0) -> list[str]:
         """The sentences that hold for one lot."""

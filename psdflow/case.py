@@ -88,7 +88,9 @@ class Case:
     @cached_property
     def report(self) -> SizeDistribution:
         """The distribution in the sizes that were measured, redrawn if this is the drawn case."""
-        return self.distribution if self.draws is None else redrawn_report(self.distribution, self.draws)
+        if self.draws is None:
+            return self.distribution
+        return redrawn_report(self.distribution, self.draws, particle_density=self.material.particle_density.value)
 
     def around(self, name: str, value: float, sd: float, low: float = -np.inf, high: float = np.inf) -> Array:
         """``value``, or draws of it with standard deviation ``sd``."""

@@ -43,6 +43,13 @@ def _reading_options(command: Callable[..., None]) -> Callable[..., None]:
             type=click.Choice(["um", "mm", "nm", "cm", "m", "in", "phi", "astm"]),
             help="Unit of the sizes.",
         ),
+        click.option("--loss-warn", type=float, help="Sieve loss, fraction of the charge, that is said (0.005)."),
+        click.option("--loss-refuse", type=float, help="Sieve loss, fraction of the charge, that is refused (0.02)."),
+        click.option("--sample-mass", metavar="MASS", help='Mass of the sample measured, e.g. "2 g".'),
+        click.option("--fines", type=click.Path(path_type=Path), help="Laser report of the fines of one sieve report."),
+        click.option("--fines-of", type=click.Choice(["passing", "all"]), help="What the laser report measured."),
+        click.option("--cut", metavar="SIZE", help="The sieve whose passing the laser measured; else the finest."),
+        click.option("--shape-factor", type=float, help="Laser size over sieve size (0.8 to 1.6); else fitted, or 1."),
     ):
         command = option(command)
     return command
@@ -58,22 +65,26 @@ def main() -> None:
 @click.argument("files", nargs=-1, required=True, type=click.Path(path_type=Path))
 @_reading_options
 @click.option("--out", type=click.Path(path_type=Path), help="Folder for the canonical tables.")
+@click.option("--fits", is_flag=True, help="Also fit the published distributions.")
 @_plainly
-def read(files: tuple[Path, ...], out: Path | None, **how: str | None) -> None:
-    """What is understood from size reports."""
+def read(files: tuple[Path, ...], out: Path | None, fits: bool, **how: Any) -> None:
+    """What is understood from the size reports in FILES; a folder stands for all reports in it."""
     from rich.console import Console
 
-    from psdflow.present.reading import understood
+    from psdflow.present.reading import fitted, understood
     from psdflow.present.sheet import file_stems, replacing
     from psdflow.reports import canonical_text
 
     console = Console(highlight=False)
-    reports = _reports(files, how)
+    reports, failures = _reports(files, how)
     for report, stem in zip(reports, file_stems([report.lot for report in reports]), strict=True):
         console.print(understood(report))
+        if fits:
+            console.print(fitted(report))
         if out is not None:
             with replacing(out / f"{stem}.csv") as file:
                 file.write(canonical_text(report))
+    _end(failures)
 
 
 @main.command()
@@ -100,9 +111,9 @@ def assess(
     draws: int | None,
     quick: bool,
     seed: int | None,
-    **how: str | None,
+    **how: Any,
 ) -> None:
-    """Predict how the lots in FILES will fluidize, cake, blow over and be lost."""
+    """Predict how the lots in FILES (reports, or folders of them) will fluidize, cake, blow over and be lost."""
     from psdflow.duty import Duty
     from psdflow.material import Material
     from psdflow.pipeline import assess as predict
@@ -113,7 +124,8 @@ def assess(
     powder, unit = Material.load(material), Duty.load(duty)
     sizes = tuple(read_quantity(text, "length").value for text in below)
     subjects = []
-    for report in _reports(files, how):
+    reports, failures = _reports(files, how)
+    for report in reports:
         try:
             assessment = predict(
                 report.distribution,
@@ -127,7 +139,9 @@ def assess(
         except InputError as error:
             raise InputError(f"{report.source}: {error}") from None
         subjects.append(Subject(assessment, 0, report.lot, report.source, report.warnings))
-    _present(subjects, out, json_to, full)
+    if subjects:
+        _present(subjects, out, json_to, full)
+    _end(failures)
 
 
 def _present(subjects: "list[Subject]", out: Path | None, json_to: str | None, full: bool) -> None:
@@ -160,11 +174,52 @@ def _present(subjects: "list[Subject]", out: Path | None, json_to: str | None, f
         click.echo(f"sheets and figures written to {out}", err=True)
 
 
-def _reports(files: tuple[Path, ...], how: dict[str, str | None]) -> "list[Report]":
+def _reports(files: tuple[Path, ...], how: dict[str, Any]) -> "tuple[list[Report], list[tuple[str, str]]]":
+    """The reports of files and folders; what failed inside folders, as (file, reason). A bad file itself is raised."""
+    from psdflow.present.progress import counted
+    from psdflow.reports import merged_report, read_folder
     from psdflow.reports import read as read_report
+    from psdflow.units import read_quantity
 
-    given: dict[str, Any] = {key: value for key, value in how.items() if value is not None}
-    return [report for file in files for report in read_report(file, **given)]
+    merge = {key: how.pop(key) for key in ("fines_of", "cut", "shape_factor")}
+    fines = how.pop("fines")
+    given = {key: value for key, value in how.items() if value is not None}
+    if "sample_mass" in given:
+        given["sample_mass"] = read_quantity(given["sample_mass"], "mass").value
+    if merge["cut"] is not None:
+        merge["cut"] = read_quantity(merge["cut"], "length").value
+    reports: list[Report] = []
+    failures: list[tuple[str, str]] = []
+    for file in files:
+        if file.is_dir():
+            with counted("reading reports") as on_progress:
+                read_here, failed_here = read_folder(file, on_progress=on_progress, **given)
+            reports += read_here
+            failures += failed_here
+        else:
+            reports += read_report(file, **given)
+    if fines is None:
+        if any(value is not None for value in merge.values()):
+            raise InputError("--fines-of, --cut and --shape-factor belong to --fines LASER; name the laser report")
+        return reports, failures
+    others = read_report(fines)
+    if len(reports) != 1 or len(others) != 1 or failures:
+        raise InputError(
+            f"--fines merges one sieve report with one laser report; {len(reports)} and {len(others)} samples were found. "
+            "Name one file; choose a sample with --sample, or write each with --out first"
+        )
+    return [merged_report(reports[0], others[0], **merge)], failures
+
+
+def _end(failures: list[tuple[str, str]]) -> None:
+    """List the files that couldn't be read, and exit 3 if there are any."""
+    if failures:
+        from rich.console import Console
+
+        from psdflow.present.reading import failed
+
+        Console(stderr=True, highlight=False).print(failed(failures))
+        sys.exit(3)
 
 
 @main.command()
@@ -204,7 +259,7 @@ def sweep(
     powder, unit = Material.load(material), Duty.load(duty)
     over, (start, stop) = read_range(*swept)
     limit = None if loss_limit is None else read_quantity(loss_limit, "mass rate").value
-    reports = _reports((file,), how)
+    reports, failures = _reports((file,), how)
     for report, stem in zip(reports, file_stems([report.lot for report in reports]), strict=True):
         found = run(report.distribution, powder, unit, over=over, start=start, stop=stop, points=points, margin=margin,
                     loss_limit=limit, lot=report.lot)  # fmt: skip
@@ -216,6 +271,7 @@ def sweep(
             figure = sweep_figure(found)
             for suffix in ("svg", "png"):
                 save(figure, out / f"{stem}-over-{over}.{suffix}")
+    _end(failures)
 
 
 @main.command()

@@ -7,13 +7,14 @@ spread evenly in ln(size), so every moment is an exact integral, not a guess at 
 """
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from typing import Literal, Self
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from psdflow.errors import InputError
+from psdflow.quality import Quality
 
 MeasuredBy = Literal["sieve", "laser", "image", "settling"]
 Quantity = Literal["mass", "volume", "number", "area"]
@@ -58,6 +59,8 @@ class SizeDistribution:
         `psdflow.sizes.open_ends`.
     quantity
         What the report counted; number and area were converted to volume on entry.
+    quality
+        How good the report is: its own repeats, sample mass and loss, whether it was reconstructed.
 
     Raises
     ------
@@ -71,6 +74,7 @@ class SizeDistribution:
     lower_open: bool = False
     upper_open: bool = False
     quantity: Quantity = "mass"
+    quality: Quality = field(default_factory=Quality)
 
     def __post_init__(self) -> None:
         edges, shares = np.asarray(self.edges, float), np.asarray(self.shares, float)
@@ -97,6 +101,7 @@ class SizeDistribution:
         measured_by: MeasuredBy = "sieve",
         lower_open: bool = False,
         upper_open: bool = False,
+        quality: Quality | None = None,
     ) -> Self:
         """Build from class shares of any quantity; number and area shares become volume shares.
 
@@ -108,7 +113,7 @@ class SizeDistribution:
         if power and np.all(edge_array > 0):
             # Inside a class a number share spread evenly in ln x has <x³> as its mean volume.
             share_array = share_array * class_means(edge_array, power, "log-uniform")
-        return cls(edge_array, share_array, measured_by, lower_open, upper_open, quantity)
+        return cls(edge_array, share_array, measured_by, lower_open, upper_open, quantity, quality or Quality())
 
     @classmethod
     def stack(cls, distributions: Sequence["SizeDistribution"]) -> "SizeDistribution":
@@ -131,6 +136,7 @@ class SizeDistribution:
             distributions[0],
             edges=np.stack([d.edges for d in distributions]),
             shares=np.stack([d.shares for d in distributions]),
+            quality=Quality.stack([d.quality for d in distributions]),
         )
 
     @property
@@ -203,4 +209,4 @@ class SizeDistribution:
         """One lot of a history, or several by a slice, along leading axis 0."""
         edges = self.edges[index] if self.edges.ndim > 1 else self.edges
         shares = self.shares[index] if self.shares.ndim > 1 else self.shares
-        return replace(self, edges=edges, shares=shares)
+        return replace(self, edges=edges, shares=shares, quality=self.quality.lot(index))

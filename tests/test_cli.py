@@ -192,3 +192,96 @@ def test_methods():
 
 def test_help():
     assert run("--help").exit_code == 0
+
+
+FILES = ROOT / "tests" / "reports"
+
+
+def folder(tmp_path, *names: str) -> str:
+    """A folder of reports, among them bad ones."""
+    place = tmp_path / "reports"
+    place.mkdir()
+    for name in names:
+        (place / Path(name).name).write_bytes((FILES / name).read_bytes())
+    return str(place)
+
+
+MIXED = ("files/sieve_mass_um.csv", "files/laser_single_size.csv", "bad/negative_share.csv", "bad/old_workbook.xls")
+
+
+def test_a_folder_goes_on_past_bad_files(tmp_path):
+    place = folder(tmp_path, *MIXED)
+    result = run("read", place, "--out", str(tmp_path / "o"))
+    assert result.exit_code == 3, result.output
+    assert "SM-0412" in result.stdout
+    assert {p.name for p in (tmp_path / "o").iterdir()} == {"SM-0412.csv", "laser_single_size.csv"}
+    assert "not read (2)" in result.stderr
+    said = " ".join(result.stderr.split())
+    assert "negative_share.csv" in said
+    assert "can't be negative" in said
+    assert "save it as .xlsx" in said
+
+
+def test_a_folder_is_assessed(tmp_path):
+    result = run("assess", folder(tmp_path, *MIXED), *CARRIER, "--draws", "20", "--json", "-")
+    assert result.exit_code == 3
+    assert [lot["lot"] for lot in json.loads(result.stdout)["lots"]] == ["laser_single_size", "SM-0412"]
+    good = str(SAMPLES)
+    assert run("read", good).exit_code == 0
+
+
+def test_a_folder_of_bad_files_only(tmp_path):
+    result = run("assess", folder(tmp_path, "bad/negative_share.csv"), *CARRIER)
+    assert result.exit_code == 3
+    assert "not read (1)" in result.stderr
+    (tmp_path / "empty").mkdir()
+    assert "holds no size report" in refused(run("read", str(tmp_path / "empty")))
+
+
+def test_the_bar_stands_on_stderr(tmp_path, monkeypatch):
+    monkeypatch.setenv("FORCE_COLOR", "1")
+    result = run("read", folder(tmp_path, *MIXED[:2]))
+    assert "reading reports" in result.stderr
+    assert "reading reports" not in result.stdout
+
+
+def test_every_reading_option_reaches_a_folder(tmp_path):
+    place = folder(tmp_path, "files/sieve_loss_warned.csv")
+    assert "0.99% lost" in " ".join(run("read", place).output.split())
+    assert "0.99% lost" not in run("read", place, "--loss-warn", "0.01").output
+    strict = run("read", place, "--loss-warn", "0.001", "--loss-refuse", "0.005")
+    assert strict.exit_code == 3
+    assert "at most 0.5% is accepted" in " ".join(strict.stderr.split())
+    assert "the first not over the second" in refused(run("read", REPORT, "--loss-warn", "0.5"))
+
+
+def test_fits():
+    result = run("read", REPORT, "--fits")
+    assert result.exit_code == 0, result.output
+    for word in ("Rosin–Rammler–Sperling–Bennett", "log-normal", "Gates–Gaudin–Schuhmann", "max miss %"):
+        assert word in result.output
+
+
+def test_a_small_sample_widens_the_coarse_end():
+    ends = []
+    for mass in ("1 mg", "100 g"):
+        result = run("assess", str(SAMPLES / "carrier-BW-0412.csv"), *CARRIER, "--sample-mass", mass, "--json", "-")
+        d90 = json.loads(result.stdout)["lots"][0]["quantities"]["d90"]
+        ends.append(d90["high"] - d90["low"])
+    assert ends[0] > ends[1]
+    assert "5 cm" in refused(run("read", REPORT, "--sample-mass", "5 cm"))
+
+
+def test_fines_by_laser(tmp_path):
+    laser = str(FILES / "merge" / "fines_laser.csv")
+    sieve = str(FILES / "merge" / "coarse_sieve.csv")
+    result = run("read", sieve, "--fines", laser, "--out", str(tmp_path))
+    assert result.exit_code == 0, result.output
+    assert "merged at 63 µm (8.0% finer)" in " ".join(result.output.split())
+    again = run("assess", str(tmp_path / "M-1.csv"), *CARRIER, "--draws", "20", "--json", "-")
+    at_once = run("assess", sieve, "--fines", laser, *CARRIER, "--draws", "20", "--json", "-")
+    one, other = (json.loads(r.stdout)["lots"][0]["quantities"] for r in (again, at_once))
+    assert one["d32"] == other["d32"]
+    assert one["pan_share"]["value"] == 0
+    assert "one sieve report with one laser report" in refused(run("read", sieve, sieve, "--fines", laser))
+    assert "belong to --fines" in refused(run("read", sieve, "--cut", "63 um"))

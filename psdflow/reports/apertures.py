@@ -33,7 +33,7 @@ NOMINAL_UM: tuple[float, ...] = (
 SERIES_TOLERANCE = 0.025  # old and rounded apertures (847, 841, 833 for 850 µm) lie within this of a nominal one
 
 # Metres in a unit as a divisor: 847 / 1e6 is the nearest number to 0.000847, 847 * 1e-6 isn't always.
-_PER_METRE = {"um": 1e6, "nm": 1e9, "mm": 1e3, "cm": 1e2, "m": 1.0}
+PER_METRE = {"um": 1e6, "nm": 1e9, "mm": 1e3, "cm": 1e2, "m": 1.0}
 
 Kind = Literal["edge", "class", "below", "above"]
 
@@ -148,7 +148,7 @@ def in_metres(value: float, unit: str) -> float:
         return ASTM_NUMBERS[key] / 1e6
     if unit == "phi":
         return float(2.0**-value) / 1e3 if -20 <= value <= 20 else float("nan")
-    return value * 0.0254 if unit == "in" else value / _PER_METRE[unit]
+    return value * 0.0254 if unit == "in" else value / PER_METRE[unit]
 
 
 def nominal(aperture: float) -> float | None:

@@ -13,6 +13,7 @@ from psdflow.reports.report import KindOfReport, Report
 
 FIRST_LINE = "# psdflow size table 1"
 _PLAIN = ("source", "sha256", "sheet", "sample", "lot", "kind", "quantity")
+_IF_KNOWN = ("sample_mass", "loss", "sieved_from")  # kg, share of the charge, m
 
 
 def canonical_text(reports: Report | Iterable[Report]) -> str:
@@ -23,6 +24,11 @@ def canonical_text(reports: Report | Iterable[Report]) -> str:
         out.write(FIRST_LINE + "\n")
         for key in _PLAIN:
             write.writerow([key, _one_line(getattr(report, key) or "")])
+        for key in _IF_KNOWN:
+            if getattr(report, key) is not None:
+                write.writerow([key, repr(float(getattr(report, key)))])
+        if report.reconstructed:
+            write.writerow(["reconstructed", "yes"])
         for name, pairs in (("field", report.fields), ("understood", report.understood)):
             for key, value in pairs.items():
                 write.writerow([name, _one_line(key), _one_line(value)])
@@ -82,7 +88,7 @@ def _report(rows: list[list[str]], offset: int, source: str) -> Report:
             table.append(_numbers(row, width, where))
         elif row[0] == "lower [m]":
             width = len(row)
-        elif len(row) == 2 and row[0] in _PLAIN:
+        elif len(row) == 2 and row[0] in (*_PLAIN, *_IF_KNOWN, "reconstructed"):
             plain[row[0]] = row[1]
         elif len(row) == 3 and row[0] in ("field", "understood"):
             (fields if row[0] == "field" else understood)[row[1]] = row[2]
@@ -129,6 +135,7 @@ def _checked(
     shares = numbers[:, 2:]
     if np.any(np.abs(shares.sum(axis=0) - 1) > 1e-9):
         raise InputError(f"{where}: the fractions add up to {shares[:, 0].sum():.6f}; 1 is expected")
+    known = {key: _known(key, plain[key], where) for key in _IF_KNOWN if key in plain}
     return Report(
         source=plain["source"],
         sha256=plain["sha256"],
@@ -145,4 +152,16 @@ def _checked(
         understood=understood,
         warnings=tuple(warnings),
         repeats=shares[:, 1:].T.copy() if shares.shape[1] > 1 else None,
+        reconstructed=plain.get("reconstructed") == "yes",
+        **known,
     )
+
+
+def _known(key: str, text: str, where: str) -> float:
+    try:
+        value = float(text)
+    except ValueError:
+        value = float("nan")
+    if not np.isfinite(value) or (key != "loss" and value <= 0) or abs(value) > 1e6:
+        raise InputError(f"{where}: {key} is {shown(text)}; a number {'' if key == 'loss' else 'over 0 '}is expected")
+    return value

@@ -6,7 +6,7 @@ from typing import NoReturn
 import numpy as np
 
 from psdflow.errors import InputError, shown
-from psdflow.reports.apertures import Size, in_metres, size_of
+from psdflow.reports.apertures import PER_METRE, Size, in_metres, size_of
 from psdflow.reports.layout import SizeColumns, Table, is_footer
 from psdflow.reports.numerals import Cell, Decimal, plain
 from psdflow.reports.size_units import UNIT_NAMES, unit_of
@@ -57,10 +57,14 @@ def read_sizes(table: Table, columns: SizeColumns, decimal: Decimal, size_unit: 
     """
     raw: list[tuple[int, Size]] = []
     footers: list[tuple[int, str]] = []
+    single = None if columns.pair else columns.first
     for i, row in enumerate(table.rows):
+        size = _pair_size(row, columns, decimal) if single is None else size_of(row[single], decimal)
+        if size is not None:
+            raw.append((i, size))
+            continue
         own = row[columns.span.start : columns.span.stop] if columns.span else row
-        size = _row_size(row, columns, decimal)
-        if size is None and all(_blank(row[c]) for c in columns.all) and (label := _label(own)):
+        if all(_blank(row[c]) for c in columns.all) and (label := _label(own)):
             named = size_of(label, decimal)  # "Pan" in a column beside the apertures
             size = named if named is not None and named.kind == "below" and named.high is None else None
         if size is not None:
@@ -80,7 +84,8 @@ def read_sizes(table: Table, columns: SizeColumns, decimal: Decimal, size_unit: 
             f"{table.where(i, columns.first)}: size {shown(table.rows[i][columns.first])} may be a thousand or a decimal; "
             "write it without a thousands separator"
         )
-    converted = [(i, _converted(table, i, columns.first, size, unit)) for i, size in raw]
+    column = columns.first
+    converted = [(i, _converted(table, i, column, size, unit)) for i, size in raw]
     ordered = _ordered(table, columns, converted)
     edge = heading(table.headers[columns.first]).edge
     edge = "" if columns.pair else ("mid" if columns.mid is not None else edge)
@@ -97,9 +102,8 @@ def _label(row: list[Cell]) -> str:
     return next((cell for cell in row if isinstance(cell, str) and any(c.isalpha() for c in cell)), "")
 
 
-def _row_size(row: list[Cell], columns: SizeColumns, decimal: Decimal) -> Size | None:
-    if not columns.pair:
-        return size_of(row[columns.first], decimal)
+def _pair_size(row: list[Cell], columns: SizeColumns, decimal: Decimal) -> Size | None:
+    """The class (or open end) that lower and upper edge of a row say."""
     assert columns.lower is not None
     assert columns.upper is not None
     low, high = size_of(row[columns.lower], decimal), size_of(row[columns.upper], decimal)
@@ -146,6 +150,8 @@ def _no_unknown_rows(
 
 def _converted(table: Table, row: int, column: int, size: Size, unit: str) -> Size:
     use = size.unit if size.unit and size.unit != "mesh" else unit
+    if size.kind == "edge" and use in PER_METRE and 1e-10 <= (metres := (size.low or 0.0) / PER_METRE[use]) < 10:
+        return Size("edge", metres, None, use, size.minus, size.grouped)  # nearly all sizes
     if use == "phi" and size.minus:
         size = Size("edge", -(size.high or 0.0), None, size.unit)
     values: list[float | None] = []
@@ -204,7 +210,7 @@ def _ordered(table: Table, columns: SizeColumns, sizes: list[tuple[int, Size]]) 
         raise InputError(
             f"{table.where(pans[0][0] if pans else sizes[-1][0], column)}: two rows for the pan; one is expected"
         )
-    zero = [pair for pair in named if pair not in inner]
+    zero = [(i, s) for i, s in named if s.kind == "edge" and s.low == 0]
     if not inner:
         raise InputError(f"{table.where(0, column)}: no size in {table.column_name(column)}; sizes over 0 are expected")
     positions = [_position(s) for _, s in inner]
@@ -231,6 +237,8 @@ def _ordered(table: Table, columns: SizeColumns, sizes: list[tuple[int, Size]]) 
 
 def _doubtful_signs(table: Table, column: int, sizes: list[tuple[int, Size]]) -> None:
     """ "-38" is the class under 38 if 38 is the finest sieve, or if others are written "-63+45"."""
+    if not any(s.minus for _, s in sizes):
+        return
     written_so = any(s.kind in ("class", "above") for _, s in sizes)
     finest = min((s.low for _, s in sizes if s.kind in ("edge", "above") and s.low), default=None)
     for i, size in sizes:

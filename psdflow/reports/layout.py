@@ -81,20 +81,17 @@ class Layout:
 
 def row_kinds(grid: Grid, decimal: Decimal) -> list[str]:
     """For each row: "blank", "comment", "data" (a size and a number), "single" (one number) or "text"."""
-    hashes = sum(_hash_number(row) for row in grid.rows)
-    plain_starts = sum(bool(row) and isinstance(row[0], str) and row[0][:1].isdigit() for row in grid.rows)
+    hashes = sum(_hash_number(row) for row in grid.rows if row and str(row[0])[:1] == "#")
+    plain_starts = (
+        sum(bool(row) and isinstance(row[0], str) and row[0][:1].isdigit() for row in grid.rows) if hashes else 0
+    )
+    numbered = hashes > plain_starts
     kinds = []
     for row in grid.rows:
         filled = [cell for cell in row if cell != ""]
-        first = filled[0] if filled else ""
         if not filled:
             kinds.append("blank")
-        elif (
-            isinstance(first, str)
-            and first[:1] == "#"
-            and first != "#"
-            and not (hashes > plain_starts and _hash_number(row))
-        ):
+        elif str(filled[0])[:1] == "#" and filled[0] != "#" and not (numbered and _hash_number(row)):
             kinds.append("comment")
         else:
             kinds.append(_kind(filled, decimal))
@@ -110,7 +107,7 @@ def _hash_number(row: list[Cell]) -> bool:
 def _kind(filled: list[Cell], decimal: Decimal) -> str:
     numbers = 0
     for cell in filled:
-        if not isinstance(cell, str) or (any(c.isdigit() for c in cell) and numeral(cell, decimal)):
+        if isinstance(cell, float) or numeral(cell, decimal):
             numbers += 1
             if numbers == 2:
                 return "data"

@@ -12,7 +12,8 @@ from psdflow.reports.cells import Grid
 from psdflow.reports.classes import Classes
 from psdflow.reports.layout import Layout, Table
 from psdflow.reports.numerals import MASSES, Decimal, numeral, plain
-from psdflow.reports.report import KindOfReport, Options
+from psdflow.reports.quantities import Quantity
+from psdflow.reports.report import KindOfReport, Options, amplified
 from psdflow.reports.samples import Sample, strip_word
 from psdflow.reports.words import BASIS, INPUT_MASS, LASER, LOT, RETAINED_OR_PASSING, SAMPLE, SIEVE, VOLUME
 
@@ -77,9 +78,11 @@ def basis_note(basis: Basis, classes: Classes) -> list[str]:
     held = classes.edges[np.flatnonzero(classes.shares > 0)] if np.any(classes.shares > 0) else classes.edges
     power = 3 if basis == "number" else 1
     factor = float((held.max() / held.min()) ** power)
+    moved = amplified(basis, classes.edges, classes.shares, 0.05) if classes.shares.sum() > 0 else 0.0
     return [
         f"{basis} shares are converted to volume (size to the power {power}): an error in the coarsest class counts "
-        f"{factor:.3g} times what it counts in the finest; a volume or mass basis is better"
+        f"{factor:.3g} times what it counts in the finest, and 5 % more width moves the median by {np.expm1(moved):.0%}; "
+        "a volume or mass basis is better"
     ]
 
 
@@ -88,34 +91,44 @@ def charge_of(layout: Layout, sample: Sample, decimal: Decimal) -> float | None:
     quantity = next((q for q in sample.quantities.values() if q.unit in MASSES or q.role == "mass"), None)
     if quantity is None:
         return None
+    into = _GRAMS.get(quantity.unit or "g", 1.0)
     for row, kind in sample.sizes.footers:
         number = numeral(sample.sizes.table.rows[row][quantity.column], decimal) if kind == "input" else None
         if number is not None:
-            return number.value * _GRAMS.get(number.unit or quantity.unit, 1.0) / _GRAMS.get(quantity.unit, 1.0)
+            return number.value * _GRAMS.get(number.unit or quantity.unit, 1.0) / into
+    field = _mass_field(layout, decimal)
+    return None if field is None else field[0] * _GRAMS.get(field[1] or quantity.unit, 1.0) / into
+
+
+def _mass_field(layout: Layout, decimal: Decimal) -> tuple[float, str] | None:
+    """The mass weighed in as a field states it, and its unit or ""; a bare "charge" may be a lot number."""
     for key, value in layout.fields.items():
-        name, unit = plain(key), ""
-        if "[" in name or "(" in name:
-            name, _, unit = name.replace("[", "(").partition("(")
+        name, _, unit = plain(key).replace("[", "(").partition("(")
         name, unit = name.strip(), unit.strip("]) ")
+        number = numeral(value.strip(), decimal) or numeral(" ".join(value.split()[:2]), decimal)
         match = INPUT_MASS.match(name)
-        number = numeral(value.strip(), decimal) or (
-            numeral(" ".join(value.split()[:2]), decimal) if value.split() else None
-        )
-        if (
-            match
-            and number
-            and match.end() == len(name)
-            and (number.unit in MASSES or unit in MASSES or name != "charge")
-        ):
-            return (
-                number.value
-                * _GRAMS.get(number.unit or unit or quantity.unit, 1.0)
-                / _GRAMS.get(quantity.unit or "g", 1.0)
-            )
+        if match and number and match.end() == len(name):
+            unit = number.unit or unit
+            if unit in MASSES or name != "charge":
+                return number.value, unit if unit in MASSES else ""
     return None
 
 
-def _field(fields: dict[str, str], pattern: re.Pattern[str], masses: bool = False) -> str:
+def sample_mass_of(
+    layout: Layout, decimal: Decimal, quantity: Quantity, charge: float | None, total: float
+) -> float | None:
+    """Mass of the sample in kg: what was weighed in, else what the fractions weigh, else a field with a unit."""
+    if quantity.role == "mass" and quantity.unit in MASSES:
+        return (charge or total) * _GRAMS[quantity.unit] / 1000
+    field = _mass_field(layout, decimal)
+    return None if field is None or not field[1] or field[0] <= 0 else field[0] * _GRAMS[field[1]] / 1000
+
+
+def field_of(fields: dict[str, str], pattern: re.Pattern[str], masses: bool = False) -> str:
+    """The value of the first field whose name is one of a pattern's words, or "".
+
+    A mass ("Charge: 100 g") is no name, unless ``masses``.
+    """
     for key, value in fields.items():
         name = plain(key).split("(")[0].split("[")[0].strip(" .:")
         if pattern.fullmatch(name):
@@ -133,7 +146,7 @@ def names_of(
     stem = Path(grid.source).stem
     name, lot = strip_word(sample.name)
     title, title_lot = strip_word(table.title)
-    field_name, field_lot = _field(layout.fields, SAMPLE), _field(layout.fields, LOT)
+    field_name, field_lot = field_of(layout.fields, SAMPLE), field_of(layout.fields, LOT)
     sheet = grid.sheet if many_sheets and grid.sheet else ""
     if alone and not many_sheets:
         name = field_name or name or field_lot or stem

@@ -106,7 +106,8 @@ def numeral(cell: Cell, decimal: Decimal) -> Numeral | None:
     if not cell or len(cell) > 40:
         return None
     if decimal == "." and _PLAIN.fullmatch(cell):
-        return _bearable(Numeral(float(cell)))
+        value = float(cell)
+        return Numeral(value) if value == 0 or SMALLEST <= abs(value) <= LARGEST else None
     match = _FULL[decimal].fullmatch(plain(cell))
     if match is None:
         return None

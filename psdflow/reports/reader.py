@@ -2,9 +2,8 @@
 
 from collections.abc import Callable, Iterable
 from dataclasses import replace
-from itertools import pairwise
 from pathlib import Path
-from typing import Literal, cast, get_args
+from typing import Any, Literal, cast, get_args
 
 import numpy as np
 
@@ -14,11 +13,14 @@ from psdflow.reports.around import stray_rows
 from psdflow.reports.canonical import is_canonical, read_canonical
 from psdflow.reports.cells import Grid, read_bytes, read_grids
 from psdflow.reports.classes import averaged
+from psdflow.reports.continued import inherit_headers, no_broken_table
 from psdflow.reports.laser import laser_classes
 from psdflow.reports.layout import Layout, Table
-from psdflow.reports.meaning import basis_note, basis_of, charge_of, kind_of, names_of
+from psdflow.reports.meaning import basis_note, basis_of, charge_of, kind_of, names_of, sample_mass_of
 from psdflow.reports.numerals import LENGTHS, Decimal, decimal_of, plain
+from psdflow.reports.percentiles import percentile_reports
 from psdflow.reports.recognise import only_percentiles, recognise
+from psdflow.reports.repeats import spread_notes
 from psdflow.reports.report import KindOfReport, Options, Report
 from psdflow.reports.samples import Sample
 from psdflow.reports.sieve import sieve_classes
@@ -39,6 +41,7 @@ def read(
     size_unit: str | None = None,
     loss_warn: float = 0.005,
     loss_refuse: float = 0.02,
+    sample_mass: float | None = None,
 ) -> list[Report]:
     """Read a size report: csv, semicolon, tab, pipe or spaced text, xlsx, or a canonical table.
 
@@ -54,6 +57,8 @@ def read(
         "cm", "m", "in", "phi" or "astm".
     loss_warn, loss_refuse
         Sieve loss as a fraction of the charge weighed in that is said, and that is refused.
+    sample_mass
+        Mass of the sample measured, kg, where the report doesn't say it; gives the sampling error of coarse grains.
 
     Returns
     -------
@@ -65,7 +70,7 @@ def read(
     InputError
         If the file can't be read with certainty; never another exception, whatever the bytes.
     """
-    options = _options(columns, kind, basis, decimal, sample, size_unit, loss_warn, loss_refuse)
+    options = _options(columns, kind, basis, decimal, sample, size_unit, loss_warn, loss_refuse, sample_mass)
     data, sha256 = read_bytes(path)
     source = Path(path).name
     if is_canonical(data):
@@ -82,7 +87,7 @@ def read(
 
 
 def read_folder(
-    folder: str | Path, *, on_progress: Callable[[int, int, str], None] | None = None
+    folder: str | Path, *, on_progress: Callable[[int, int, str], None] | None = None, **how: Any
 ) -> tuple[list[Report], list[tuple[str, str]]]:
     """Read every report of a folder, going on past bad files.
 
@@ -90,6 +95,8 @@ def read_folder(
     ----------
     on_progress
         Called with (files done, files in all, name) before each file and at the end.
+    how
+        Options of `read`, for every file.
 
     Returns
     -------
@@ -110,7 +117,7 @@ def read_folder(
         if on_progress:
             on_progress(k, len(files), file.name)
         try:
-            reports += read(file)
+            reports += read(file, **how)
         except InputError as error:
             failures.append((file.name, str(error)))
     if on_progress:
@@ -127,6 +134,7 @@ def _options(
     size_unit: str | None,
     loss_warn: float,
     loss_refuse: float,
+    sample_mass: float | None,
 ) -> Options:
     for name, value, allowed in (
         ("kind", kind, get_args(KindOfReport)),
@@ -136,6 +144,13 @@ def _options(
     ):
         if value is not None and value not in allowed:
             raise InputError(f"--{name} {shown(value)} is unknown; one of {', '.join(allowed)} is expected")
+    if not 0 <= loss_warn <= loss_refuse <= 1:
+        raise InputError(
+            f"--loss-warn {loss_warn:g} and --loss-refuse {loss_refuse:g}: fractions of the charge from 0 to 1 are "
+            "expected, the first not over the second"
+        )
+    if sample_mass is not None and not 0 < sample_mass < 1e6:
+        raise InputError(f"--sample-mass {sample_mass:g} kg: a mass over 0 is expected")
     return Options(
         columns,
         cast("KindOfReport | None", kind),
@@ -145,6 +160,7 @@ def _options(
         size_unit,
         loss_warn,
         loss_refuse,
+        sample_mass,
     )
 
 
@@ -162,9 +178,9 @@ def _read_grids(grids: Iterable[Grid], source: str, options: Options) -> list[Re
         percentiles |= (
             len(tables) < len(layout.tables) or sum(bool(STATISTIC.fullmatch(plain(k))) for k in layout.fields) > 1
         )
-        _inherit_headers(tables)
+        inherit_headers(tables)
         found: list[tuple[Table, Sample]] = [(t, s) for t in tables for s in recognise(t, options, decimal)]
-        _no_broken_table(found)
+        no_broken_table(found)
         layout.fields = {**shared, **layout.fields}
         layout.titles += shared_titles
         many_sheets = sum(bool(other.tables) for _, _, other in layouts) > 1
@@ -172,6 +188,8 @@ def _read_grids(grids: Iterable[Grid], source: str, options: Options) -> list[Re
             reports.append(
                 _report(grid, layout, table, sample, decimal, options, alone=len(found) == 1, many_sheets=many_sheets)
             )
+    if not reports:
+        reports = [report for layout in layouts for report in percentile_reports(*layout, options)]
     if not reports:
         what = (
             "only percentiles and means were found, no classes"
@@ -183,39 +201,6 @@ def _read_grids(grids: Iterable[Grid], source: str, options: Options) -> list[Re
             "under a header that names them with units"
         )
     return _distinct(reports)
-
-
-def _inherit_headers(tables: list[Table]) -> None:
-    """A further block without headers of its own has those of the block above, if it is as wide."""
-    for before, table in pairwise(tables):
-        wordless = not any(table.headers)
-        if wordless and not table.across and not before.across and len(before.headers) == len(table.headers):
-            table.headers = list(before.headers)
-
-
-def _no_broken_table(found: list[tuple[Table, Sample]]) -> None:
-    """Refuse a table that goes on below a line of text as if it were another sample."""
-    for (table, one), (below, two) in pairwise(found):
-        if table is below or table.across or below.across or one.sizes.has_pan:
-            continue
-        sizes = [[c.low or c.high or 0.0 for c in s.sizes.cells if c.low or c.high] for s in (one, two)]
-        finer, coarser = (two, one) if max(sizes[1]) <= min(sizes[0]) else (one, two)
-        apart = max(sizes[1]) <= min(sizes[0]) or min(sizes[1]) >= max(sizes[0])
-        if apart and (not below.title or below.headers == table.headers) and _goes_on(finer, coarser):
-            raise InputError(
-                f"{below.where(0)}: these sizes go on from the table above; remove the lines between if it is one table, "
-                "else give each table its own pan row"
-            )
-
-
-def _goes_on(finer: Sample, coarser: Sample) -> bool:
-    """Whether two tables can be one: shares in class, or cumulative values that run on from one to the other."""
-    for role in ("under", "over"):
-        if role in finer.quantities and role in coarser.quantities:
-            last = [v for v in finer.quantities[role].values if v is not None]
-            first = [v for v in coarser.quantities[role].values if v is not None]
-            return bool(last and first) and (last[-1] <= first[0] if role == "under" else last[-1] >= first[0])
-    return True
 
 
 def _report(
@@ -249,6 +234,8 @@ def _report(
         for column in reading.quantities.values():
             warnings += [note for note in column.notes if note not in warnings]
     warnings += basis_note(basis, classes)
+    if repeats is not None:
+        warnings += spread_notes(kind, classes.edges, repeats)
     start = table.lines[0] if table.across else table.place[0]
     warnings += [f"row {grid.numbers[i]} was not used: {_row_text(grid, i)}" for i in layout.unclaimed[:9] if i > start]
     name, lot = names_of(grid, layout, table, sample, alone, many_sheets)
@@ -271,6 +258,8 @@ def _report(
         understood=understood,
         warnings=tuple(dict.fromkeys(warnings)),
         repeats=repeats,
+        sample_mass=options.sample_mass or sample_mass_of(layout, decimal, quantity, charge, classes.total),
+        loss=1 - classes.total / charge if charge and quantity.role == "mass" else None,
     )
 
 

@@ -244,9 +244,10 @@ def _said_quantity(sizes: Sizes, column: int, decimal: Decimal, role: str) -> Qu
 
 def only_percentiles(table: Table, decimal: Decimal) -> bool:
     """Whether a table lists percentiles and means rather than classes."""
-    if any(row[0] != "" and (size := size_of(row[0], decimal)) and size.kind != "edge" for row in table.rows):
-        return False
-    labels = [plain(str(row[0])) for row in table.rows if row[0] != ""]
-    in_rows = sum(bool(STATISTIC.fullmatch(label)) for label in labels)
+    labels = [str(row[0]) for row in table.rows if row[0] != ""]
+    in_rows = sum(not label[0].isdigit() and bool(STATISTIC.fullmatch(plain(label))) for label in labels)
     in_head = sum(bool(STATISTIC.fullmatch(plain(h))) for h in table.headers if h)
-    return in_rows >= max(2, 0.6 * len(labels)) or in_head >= 2
+    if in_rows < max(2, 0.6 * len(labels)) and in_head < 2:
+        return False
+    sizes = [size_of(row[0], decimal) for row in table.rows if row[0] != ""]
+    return not any(size is not None and size.kind != "edge" for size in sizes)

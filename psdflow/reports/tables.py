@@ -90,12 +90,17 @@ def _no_overhang(grid: Grid, headers: list[str], body: list[int], decimal: Decim
     headed = max((j + 1 for j, header in enumerate(headers) if header), default=0)
     if not headed:
         return
-    filled = max((j + 1 for i in body for j, cell in enumerate(grid.rows[i]) if cell != ""), default=0)
+    filled = 0  # columns that any row fills
+    for i in body:
+        while any(cell != "" for cell in grid.rows[i][filled:]):
+            filled += 1
     spare = [h.split("\n")[-1] for h in headers[filled:]]
     if spare[:1] != [""] and any(numeral(h, decimal) for h in spare[: [*spare, ""].index("")]):
         raise InputError(
             f"{grid.where(body[0])}: the header above goes on with numbers ({shown(' '.join(spare))}); one row a line is expected"
         )
+    if filled <= headed:
+        return
     over: dict[int, list[int]] = {}
     for i in body:
         for j in range(headed, len(grid.rows[i])):
@@ -183,6 +188,8 @@ def _join_headers(grid: Grid, header_rows: list[int], width: int) -> list[str]:
 def _lying_table(grid: Grid, start: int, kinds: list[str], decimal: Decimal) -> tuple[Table, int] | None:
     """A table with the sizes across the top, if row ``start`` is its row of sizes; and the row after it."""
     row = grid.rows[start]
+    if isinstance(row[0], float) or row[0][:1].isdigit():
+        return None  # most rows: they begin with a number
     first = next(j for j, cell in enumerate(row) if cell != "")
     label = row[first]
     if not isinstance(label, str) or label[0].isdigit() or size_of(label, decimal) is not None:

@@ -8,7 +8,7 @@ from psdflow.reports.cells import MAX_CELLS, Grid
 from psdflow.reports.numerals import Cell
 
 _SEPARATORS = ("\t", ";", "|", ",")
-_LINES_LOOKED_AT = 40
+_LINES_LOOKED_AT = 24
 _CONTROL = re.compile(r"[\x00-\x08\x0e-\x1a\x1c-\x1f]")
 
 # A cell that is a size or a number: what is left after digits, signs and unit words are taken away is nothing.
@@ -113,11 +113,12 @@ def _split(text: str, lines: list[str], separator: str) -> tuple[list[list[Cell]
             if len(cells) == 1 and len(words := re.sub(r" (?=[\[(])", "", cells[0]).split()) == usual:
                 spaced[k] = words
         return [list(cells) for cells in spaced], list(range(1, len(lines) + 1))
-    if '"' in text:
-        try:
-            return _split_quoted(lines, separator)
-        except csv.Error:
-            pass  # quote marks not in pairs (inches, for example): they are no quotes then
+    if '"' not in text:
+        return [[cell.strip() for cell in line.split(separator)] for line in lines], list(range(1, len(lines) + 1))
+    try:
+        return _split_quoted(lines, separator)
+    except csv.Error:
+        pass  # quote marks not in pairs (inches, for example): they are no quotes then
     rows: list[list[Cell]] = [[cell.strip().strip('"').strip() for cell in line.split(separator)] for line in lines]
     return rows, list(range(1, len(lines) + 1))
 

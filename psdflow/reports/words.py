@@ -4,6 +4,7 @@ All patterns are matched on `numerals.plain` text: lower case, no accents, ``um`
 """
 
 import re
+from functools import lru_cache
 from typing import Literal, NamedTuple
 
 from psdflow.reports.numerals import plain
@@ -160,6 +161,7 @@ class Heading(NamedTuple):
     unused: bool
 
 
+@lru_cache(maxsize=2048)
 def heading(raw: str) -> Heading:
     """Read a column's header text."""
     text = plain(raw).replace("\n", " ")
@@ -251,6 +253,7 @@ _STRIP = [
 ]  # fmt: skip
 
 
+@lru_cache(maxsize=2048)
 def name_left(raw: str) -> str:
     """What remains of a header without units and quantity words: a sample's name, or nothing."""
     text = plain(raw)

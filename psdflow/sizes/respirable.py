@@ -5,6 +5,7 @@ from numpy.typing import ArrayLike, NDArray
 
 # Median (µm) and geometric standard deviation of the cumulative log-normals, ISO 7708:1995.
 THORACIC_MEDIAN, RESPIRABLE_MEDIAN, SPREAD = 11.64, 4.25, 1.5
+LARGEST_INHALED = 100e-6  # m; the inhalable convention says nothing of larger grains: they are left out of the shares
 
 
 def aerodynamic_diameter(

@@ -8,7 +8,7 @@ from psdflow.case import Case
 from psdflow.results import Findings
 from psdflow.sizes import statistics as st
 from psdflow.sizes.open_ends import moved_ends
-from psdflow.sizes.respirable import aerodynamic_diameter, respirable
+from psdflow.sizes.respirable import LARGEST_INHALED, aerodynamic_diameter, inhalable, respirable, thoracic
 
 DEFINITION = "iso-9276-2"
 FINES_SIZES = (10e-6, 20e-6, 45e-6)
@@ -68,13 +68,20 @@ def size_stage(case: Case, found: Findings, below: Iterable[float] = ()) -> None
     )
     middle = np.sqrt(case.volume.edges[..., :-1] * case.volume.edges[..., 1:])
     aerodynamic = aerodynamic_diameter(diameter=middle, particle_density=np.asarray(case.particle_density)[..., None])
-    found.put(
-        "respirable_share",
-        (case.volume.shares * respirable(aerodynamic)).sum(axis=-1),
-        "share",
-        "iso-7708",
-        note="of the powder, not of any airborne dust",
-    )
+    for key, convention in (("inhalable", inhalable), ("thoracic", thoracic), ("respirable", respirable)):
+        passing = np.where(aerodynamic <= LARGEST_INHALED, convention(aerodynamic), 0.0)
+        found.put(
+            f"{key}_share",
+            (case.volume.shares * passing).sum(axis=-1),
+            "share",
+            "iso-7708",
+            note="of the powder, not of any airborne dust",
+        )
+    if case.draws is None:
+        found.warn(
+            report.quality.reconstructed,
+            "the report gives percentiles only: its classes, and every figure that follows from them, are a reconstruction",
+        )
 
 
 def _d32_alternatives(case: Case) -> dict[str, np.ndarray]:

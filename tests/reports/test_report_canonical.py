@@ -21,7 +21,8 @@ def _same(one: Report, other: Report) -> None:
     assert (one.repeats is None) == (other.repeats is None)
     if one.repeats is not None and other.repeats is not None:
         assert np.array_equal(one.repeats, other.repeats)
-    for key in ("source", "sha256", "sheet", "sample", "lot", "kind", "quantity", "fields", "understood", "warnings"):
+    for key in ("source", "sha256", "sheet", "sample", "lot", "kind", "quantity", "fields", "understood", "warnings",
+                "sample_mass", "loss", "sieved_from", "reconstructed"):  # fmt: skip
         assert getattr(one, key) == getattr(other, key), key
 
 
@@ -64,6 +65,10 @@ def reports(draw: st.DrawFn) -> Report:
         understood=draw(st.dictionaries(words, words, max_size=3)),
         warnings=tuple(draw(st.lists(words, max_size=3))),
         repeats=repeats,
+        sample_mass=draw(st.none() | st.floats(1e-6, 100)),
+        loss=draw(st.none() | st.floats(-0.02, 0.02)),
+        sieved_from=draw(st.none() | st.floats(1e-6, 1e-3)),
+        reconstructed=draw(st.booleans()),
     )
 
 

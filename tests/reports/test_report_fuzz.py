@@ -12,7 +12,7 @@ from psdflow.errors import InputError
 from psdflow.reports import Report, read
 
 HERE = Path(__file__).parent
-TEXTS = sorted(p for p in (HERE / "files").iterdir() if p.suffix != ".xlsx")
+TEXTS = sorted(p for f in ("files", "percentiles") for p in (HERE / f).iterdir() if p.suffix != ".xlsx")
 BOOKS = sorted((HERE / "files").glob("*.xlsx"))
 OPTIONS = settings(deadline=None, suppress_health_check=[HealthCheck.too_slow, HealthCheck.data_too_large])
 
