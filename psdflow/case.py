@@ -179,6 +179,12 @@ class Case:
         }
 
     @property
+    def gas_flow(self) -> Array:
+        """Gas through the whole bed, m³/s at bed conditions; NaN without a bed."""
+        diameter = self.duty.bed.diameter.value if self.duty.bed else np.nan
+        return np.asarray(self.velocity * np.pi / 4 * diameter**2)
+
+    @property
     def shape(self) -> tuple[int, ...]:
         """Leading shape."""
         return self.report.shape

@@ -95,6 +95,7 @@ def read(files: tuple[Path, ...], out: Path | None, fits: bool, **how: Any) -> N
 @click.option("--below", multiple=True, metavar="SIZE", help='Also the share below this size, e.g. "30 um".')
 @click.option("--out", type=click.Path(path_type=Path), help="Folder for the sheets and figures.")
 @click.option("--json", "json_to", metavar="FILE|-", help="Everything as JSON, to a file or to the terminal.")
+@click.option("--over-time", metavar="TIMES", help='The fed bed after some times, e.g. "1 h, 1 d, 4 week".')
 @click.option("--full", is_flag=True, help="The whole page of every lot, not only the overview.")
 @click.option("--draws", default=None, type=click.IntRange(0, 100_000), help="Draws behind the intervals; 0 for none.")
 @click.option("--quick", is_flag=True, help="No draws, so no intervals; the page says so.")
@@ -107,6 +108,7 @@ def assess(
     below: tuple[str, ...],
     out: Path | None,
     json_to: str | None,
+    over_time: str | None,
     full: bool,
     draws: int | None,
     quick: bool,
@@ -141,6 +143,10 @@ def assess(
         subjects.append(Subject(assessment, 0, report.lot, report.source, report.warnings))
     if subjects:
         _present(subjects, out, json_to, full)
+        if over_time is not None and json_to != "-":
+            from psdflow.present.bed_time import print_over_time
+
+            print_over_time(subjects, over_time)
     _end(failures)
 
 
@@ -181,8 +187,8 @@ def _reports(files: tuple[Path, ...], how: dict[str, Any]) -> "tuple[list[Report
     from psdflow.reports import read as read_report
     from psdflow.units import read_quantity
 
-    merge = {key: how.pop(key) for key in ("fines_of", "cut", "shape_factor")}
-    fines = how.pop("fines")
+    merge = {key: how.pop(key, None) for key in ("fines_of", "cut", "shape_factor")}
+    fines = how.pop("fines", None)
     given = {key: value for key, value in how.items() if value is not None}
     if "sample_mass" in given:
         given["sample_mass"] = read_quantity(given["sample_mass"], "mass").value
@@ -272,6 +278,39 @@ def sweep(
             for suffix in ("svg", "png"):
                 save(figure, out / f"{stem}-over-{over}.{suffix}")
     _end(failures)
+
+
+@main.command()
+@click.argument("file", type=click.Path(path_type=Path))
+@click.option("--material", required=True, type=click.Path(path_type=Path), help="What the powder is (YAML).")
+@click.option("--duty", required=True, type=click.Path(path_type=Path), help="Where it is fluidized (YAML).")
+@click.option("--loss-limit", metavar="RATE", help='Largest fines share that keeps the loss under it, e.g. "2 kg/h".')
+@click.option("--cut", "wanted_cut", metavar="SIZE", help='Cyclones that reach this cut size, e.g. "5 um".')
+@click.option(
+    "--drop", metavar="PRESSURE", default="1.5 kPa", show_default=True, help="Allowed pressure drop for --cut."
+)
+@click.option("--design", default="stairmand-high-efficiency", show_default=True, help="Standard design for --cut.")
+@click.option("--sample", help="Read only the sample of this name.")
+@_plainly
+def solve(
+    file: Path,
+    material: Path,
+    duty: Path,
+    loss_limit: str | None,
+    wanted_cut: str | None,
+    drop: str,
+    design: str,
+    sample: str | None,
+) -> None:
+    """Ask backwards: the most fines for a loss limit, the cyclones for a cut size."""
+    from psdflow.present.bed_time import cyclone_answer, fines_answer
+
+    if loss_limit is None and wanted_cut is None:
+        raise InputError("solve: give --loss-limit for the most fines, or --cut for the cyclones")
+    for report in _reports((file,), {} if sample is None else {"sample": sample})[0]:
+        for text, answer in ((loss_limit, fines_answer), (wanted_cut, cyclone_answer)):
+            if text is not None:
+                click.echo(f"{report.lot}: {answer(report, material, duty, text, drop, design)}")
 
 
 @main.command()

@@ -14,6 +14,7 @@ from psdflow.documents import (
     Length,
     MassRate,
     Pressure,
+    Rate,
     Temperature,
     Time,
     Velocity,
@@ -75,6 +76,12 @@ class FluidState(Document):
         if self.mixture is not None:
             return fluids.gas_mixture(self.mixture, temperature=t, pressure=p)
         return fluids.liquid(self.liquid or "", temperature=t, pressure=p)
+
+    @property
+    def steam_fraction(self) -> float:
+        """Mole fraction of steam, 0 where the fluid is given by its density."""
+        parts = self.mixture or ({self.gas: 1.0} if self.gas else {})
+        return sum(share for name, share in parts.items() if "steam" in fluids.composition(name))
 
     def slopes(self, name: str) -> tuple[float, float]:
         """``d ln ρ / dx`` and ``d ln µ / dx`` at this state, x the temperature (1/K) or the pressure (1/Pa).
@@ -143,6 +150,7 @@ class Cyclone(Document):
 class Duty(Document):
     """Fluid state, vessel, superficial velocity at bed conditions; feed, hours and cyclones if there are any.
 
+    ``attrition`` is what the coarser classes lose to the finest, of their mass in a time (``0.001 1/h``).
     ``coarse_end`` is the share (0.5..0.99, default 90 %) whose size stands for the coarse end in u_cf.
     """
 
@@ -151,6 +159,7 @@ class Duty(Document):
     velocity: Velocity
     bed: Bed | None = None
     feed: Feed | None = None
+    attrition: Rate | None = None
     operating_hours: Time | None = None
     coarse_end: Fraction = Measured(0.9)
     cyclones: tuple[Cyclone, ...] = Field(default=(), max_length=3)

@@ -69,6 +69,7 @@ class Findings:
         self.assumptions: list[str] = []
         self.classes: dict[str, NDArray[np.float64]] = {}
         self.indicators: list[Indicator] = []
+        self.balance: Any = None  # the bed's class balance (psdflow.carryover.balance), where feed and bed are known
 
     def __getitem__(self, key: str) -> NDArray[Any]:
         return self.estimates[key].value

@@ -45,6 +45,7 @@ tonne = 1e6 * gram = t
 minute = 60 * second = min
 hour = 3600 * second = h = hr
 day = 86400 * second = d
+week = 604800 * second = wk
 year = 31557600 * second = a = yr
 litre = 1e-3 * meter ** 3 = l = L = liter
 newton = kilogram * meter / second ** 2 = N
@@ -70,6 +71,7 @@ _DIMENSIONS: dict[str, tuple[str, str]] = {
     "mass flux": ("kilogram / meter ** 2 / second", "0.5 kg/m^2/s"),
     "concentration": ("kilogram / meter ** 3", "20 mg/m^3"),
     "time": ("second", "7500 h"),
+    "rate": ("1 / second", "0.001 1/h"),
     "angle": ("radian", "33 deg"),
     "energy": ("joule", "1.4e-19 J"),
     "specific surface": ("meter ** 2 / kilogram", "80 m^2/kg"),

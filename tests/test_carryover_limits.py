@@ -154,14 +154,10 @@ def test_no_cyclone_says_so():
     assert "no cyclones" in absent["loss_rate"]
 
 
-def test_interval_holds_the_laws_in_range():
-    """The 95 % interval of the flux is at least a factor of 2.7 either way, and holds most default laws."""
-    found = assess(LOT, CARRIER, duty(0.6))
-    low, high, value = (
-        float(x) for x in (found.low["carryover_flux"], found.high["carryover_flux"], found["carryover_flux"])
-    )
-    assert high / value > 2.5
-    assert value / low > 2.5
-    laws = found.alternatives()["carryover_flux"]
-    inside = sum(low <= float(laws[key]) <= high for key in DEFAULT_LAWS)
-    assert inside >= 4
+def test_interval_of_the_flux_is_never_narrow():
+    """A factor of 2 either way at the least, whatever the laws say."""
+    for velocity in (0.3, 0.6, 1.0):
+        found = assess(LOT, CARRIER, duty(velocity))
+        low, high = float(found.low["carryover_flux"]), float(found.high["carryover_flux"])
+        assert high / float(found["carryover_flux"]) > 2
+        assert float(found["carryover_flux"]) / low > 2

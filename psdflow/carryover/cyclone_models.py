@@ -4,10 +4,13 @@ Gas flow ``flow`` is per cyclone, m³/s at inlet conditions. Cut sizes have the 
 curve takes ``size`` with classes on the last axis and ``cut`` of the leading shape. All sizes assume Stokes drag.
 """
 
+from typing import Any
+
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from psdflow.carryover.cyclone import CycloneGeometry
+from psdflow.carryover.muschelknautz import GRADE_SLOPE, muschelknautz_cut
 
 Array = NDArray[np.float64]
 
@@ -104,11 +107,12 @@ def iozia_leith_cut(
     )
 
 
-CUT_SIZES = {
+CUT_SIZES: dict[str, Any] = {
     "stairmand-similarity": similarity_cut,
     "barth-1956": barth_cut,
     "iozia-leith-1989": iozia_leith_cut,
     "lapple-1951": lapple_cut,
+    "muschelknautz": muschelknautz_cut,
 }
 
 
@@ -144,13 +148,13 @@ def iozia_leith_slope(*, geometry: CycloneGeometry, cut: ArrayLike) -> Array:
 
 
 def grade_slope(key: str, *, geometry: CycloneGeometry, cut: ArrayLike) -> Array:
-    """Exponent m of a model's grade curve ``1/(1 + (x50/x)^m)``: 2 for Lapple and for similarity, 6.4 for Barth.
+    """Exponent m of a model's grade curve ``1/(1 + (x50/x)^m)``: 2 for Lapple and similarity, 6.4 Barth, 5 Muschelknautz.
 
     Sources: Theodore & DePaola 1980 for Lapple, Rhodes 2008 for similarity (looked up), Dirgo & Leith for Barth.
     """
     if key == "iozia-leith-1989":
         return iozia_leith_slope(geometry=geometry, cut=cut)
-    return np.full(np.shape(cut), BARTH_SLOPE if key == "barth-1956" else 2.0)
+    return np.full(np.shape(cut), {"barth-1956": BARTH_SLOPE, "muschelknautz": GRADE_SLOPE}.get(key, 2.0))
 
 
 def grade_efficiency(*, size: ArrayLike, cut: ArrayLike, slope: ArrayLike) -> Array:

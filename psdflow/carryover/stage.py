@@ -9,18 +9,20 @@ import numpy as np
 from numpy.typing import NDArray
 
 from psdflow.carryover import elutriation
+from psdflow.carryover.balance_stage import STEADY, balance_stage
 from psdflow.carryover.cyclone_stage import cyclone_stage
-from psdflow.carryover.freeboard import disengaging_heights
+from psdflow.carryover.freeboard import disengaging_heights, flux_at_height, surface_flux
+from psdflow.carryover.saturation import choking_flux
 from psdflow.case import Array, Case
 from psdflow.distribution import SizeDistribution
 from psdflow.fluidization.terminal import size_with_terminal_velocity, terminal_velocity
 from psdflow.methods import distance_outside, in_range
 from psdflow.results import Findings
 
-LEAST_DOUBT = 0.5  # standard deviation of ln(flux) where the laws agree: a factor of 2.7 either way at 95 %
+COMMON_DOUBT = 0.35  # standard deviation of ln(flux) that all laws share: a factor of 2 either way. Judgement
 NEARLY_AS_NEAR = 0.5  # ln units: laws this much further out of range than the nearest one are still combined
 FINENESS, MOST_PARTS = 60, 5  # sub-classes aimed at, the most a class is cut into: within 0.5 % of ten times as many
-RATES = "carryover_flux carryover_rate carryover_d50 tdh"
+RATES = "carryover_flux carryover_rate carryover_d50 tdh carryover_flux_outlet choking_flux"
 LOSSES = (
     "cyclone_cut_size cyclone_efficiency cyclone_pressure_drop cyclone_inlet_velocity "
     "loss_rate loss_d50 loss_concentration"
@@ -28,10 +30,11 @@ LOSSES = (
 
 
 class Stream(NamedTuple):
-    """Carried dust by sub-class: the lot in volume-equivalent sizes, mean sizes, flux (kg/m²/s), parts a class."""
+    """Carried dust by sub-class: the lot in volume-equivalent sizes, mean sizes, K*∞ and flux (kg/m²/s), parts a class."""
 
     fine: SizeDistribution
     size: Array
+    constant: Array
     flux: Array
     parts: int
 
@@ -41,18 +44,20 @@ def carryover_stage(case: Case, found: Findings) -> None:
     _carried(case, found)
     _class_rows(case, found)
     if case.fluid.phase == "liquid":
-        found.miss(f"{RATES} {LOSSES}", "elutriation laws and gas cyclones don't apply in a liquid")
+        found.miss(f"{RATES} {LOSSES} {STEADY}", "elutriation laws and gas cyclones don't apply in a liquid")
         return
     if case.duty.bed is None:
-        found.miss(f"{RATES} {LOSSES}", "the duty has no bed: with a diameter")
+        found.miss(f"{RATES} {LOSSES} {STEADY}", "the duty has no bed: with a diameter")
         return
     stream = _flux(case, found)
     _disengaging(case, found)
     if not case.duty.cyclones:
         found.miss(LOSSES, "the duty has no cyclones:; all that is carried over leaves")
-        found.classes |= {name: np.full((1,), np.nan) for name in ("cyclone_efficiency", "loss_share")}
-        return
-    cyclone_stage(case, found, stream.fine, stream.size, stream.flux, stream.parts)
+        returned, penetration = np.zeros_like(stream.flux), np.ones_like(stream.flux)
+    else:
+        returned, penetration = cyclone_stage(case, found, stream.fine, stream.size, stream.flux, stream.parts)
+    by_class = (class_sum(values, stream.parts) / stream.parts for values in (stream.constant, returned, penetration))
+    balance_stage(case, found, *by_class)
 
 
 def class_sum(values: Array, parts: int) -> Array:
@@ -147,7 +152,8 @@ def _flux(case: Case, found: Findings) -> Stream:
     totals = {key: (value * fine.shares).sum(axis=-1) for key, value in constants.items()}
     scatter = case.scatter("elutriation", _doubt(totals, usable))
     fluidized = np.where(velocity > found["u_mf"], 1.0, 0.0)
-    flux = constant * fine.shares * (scatter * fluidized)[..., None]
+    constant = constant * (scatter * fluidized)[..., None]
+    flux = constant * fine.shares
     total = found.put(
         "carryover_flux",
         flux.sum(axis=-1),
@@ -160,13 +166,14 @@ def _flux(case: Case, found: Findings) -> Stream:
     found.put("carryover_rate", total * np.pi / 4 * diameter**2, "kg/s", "elutriation-mean", in_range=any_law)
     found.put("carryover_d50", median_size(fine, flux), "m", "elutriation-mean", note="volume-equivalent")
     _flux_warnings(case, found, any_law, level, total)
+    _choking(case, found, total, diameter)
     share = np.where(total > 0, total, np.nan)[..., None]
     found.classes |= {
         "elutriation_constant": class_sum(constant, parts) / parts,
         "carryover_flux": class_sum(flux, parts),
         "carryover_share": class_sum(flux, parts) / share,
     }
-    return Stream(fine, size, flux, parts)
+    return Stream(fine, size, constant, flux, parts)
 
 
 def _usable(
@@ -195,14 +202,14 @@ def _usable(
 
 
 def _doubt(totals: dict[str, Array], usable: dict[str, NDArray[np.bool_]]) -> Array:
-    """Standard deviation of ln(flux): the spread of the laws that were combined, never under `LEAST_DOUBT`."""
+    """Standard deviation of ln(flux): of the mean of the laws that were combined, and what they all share."""
     logs = np.stack([np.log(np.maximum(totals[key], 1e-30)) for key in usable])
     gates = np.stack([np.broadcast_to(gate, logs.shape[1:]) for gate in usable.values()])
-    gates = np.where(gates.any(axis=0), gates, True)
-    count = gates.sum(axis=0)
+    count = np.maximum(gates.sum(axis=0), 1)
     mean = (logs * gates).sum(axis=0) / count
     spread = np.sqrt((gates * (logs - mean) ** 2).sum(axis=0) / np.maximum(count - 1, 1))
-    return np.asarray(np.clip(spread, LEAST_DOUBT, 2.0))
+    alone = np.where(count == 1, 0.8, spread)  # one law only: its scatter on foreign data
+    return np.asarray(np.hypot(np.minimum(alone, 2.5) / np.sqrt(count), COMMON_DOUBT))
 
 
 def _flux_warnings(case: Case, found: Findings, any_law: NDArray[np.bool_], level: Array, total: Array) -> None:
@@ -240,11 +247,62 @@ def _disengaging(case: Case, found: Findings) -> None:
     value = every[key] * case.method_scatter("tdh", np.full((), key))
     inside = in_range(key, velocity=velocity, bed_diameter=diameter)
     tdh = found.put("tdh", value, "m", key, in_range=inside, alternatives=every, note="above the bed surface")
+    bubble = found.get("bubble_diameter")
+    if bed.freeboard_height is None or bubble is None:
+        found.miss("carryover_flux_outlet", "the bed has no freeboard_height: or no settled_height:")
     if bed.freeboard_height is not None:
         free = bed.freeboard_height.value
+        if bubble is not None:
+            _outlet_flux(case, found, bubble, free)
         found.warn(
             tdh > free,
             f"the outlet is {free:.2g} m above the bed, below the disengaging height of {{tdh:.2g}} m: "
             "more is carried over than given",
             tdh=tdh,
         )
+
+
+def _outlet_flux(case: Case, found: Findings, bubble: Array, height: float) -> None:
+    """Flux at the outlet: what is carried for good, and what is thrown up at the surface and hasn't fallen back yet.
+
+    Shown beside the far flux, not used for the losses: the law for the ejected flux is an order of magnitude, and
+    what it adds is coarse splash that any cyclone catches.
+    """
+    thrown = surface_flux(
+        velocity=case.velocity,
+        minimum_fluidization_velocity=found["u_mf"],
+        bubble_diameter=np.nan_to_num(bubble),
+        fluid_density=case.fluid_density,
+        fluid_viscosity=case.fluid_viscosity,
+    )
+    far = found["carryover_flux"]
+    value = flux_at_height(far_flux=far, surface_flux=thrown * case.scatter("surface flux", 1.0), height=height)
+    found.put(
+        "carryover_flux_outlet", value, "kg/m^2/s", "wen-chen-1982-decay", note=f"{height:g} m above the bed surface"
+    )
+
+
+def _choking(case: Case, found: Findings, total: Array, diameter: float) -> None:
+    """The most that dilute upflow could carry, and a warning where the flux asks for more."""
+    u_t = found["u_t10"]
+    every = {
+        law: choking_flux(
+            velocity=case.velocity,
+            terminal_velocity=u_t,
+            particle_density=case.particle_density,
+            fluid_density=case.fluid_density,
+            bed_diameter=diameter,
+            law=law,
+        )
+        for law in ("yang-1983", "punwani-1976")
+    }
+    most = found.put(
+        "choking_flux", every["yang-1983"], "kg/m^2/s", "yang-1983", alternatives=every, note="of the d10 grain"
+    )
+    found.warn(
+        (total > most) & (most > 0),
+        "the carryover ({flux:.2g} kg/m²/s) exceeds the choking flux of dilute upflow ({most:.2g} kg/m²/s, Yang 1983): "
+        "it may be overstated",
+        flux=total,
+        most=most,
+    )

@@ -53,7 +53,7 @@ def gas_bed(case: Case, found: Findings) -> None:
     vessel = case.duty.bed
     if vessel is None or vessel.settled_height is None:
         found.miss(
-            "bed_pressure_drop expanded_height bubble_diameter bubble_flow dense_flow bubble_rise_velocity bubble_fraction "
+            "bed_pressure_drop bed_mass expanded_height bubble_diameter bubble_flow dense_flow bubble_rise_velocity bubble_fraction "
             "u_ms_slug slug_kind",
             NO_BED,
         )
@@ -62,6 +62,8 @@ def gas_bed(case: Case, found: Findings) -> None:
     solids = _solids_height(case, found, vessel.settled_height.value)
     height_mf = solids / (1 - found["voidage_mf"])
     _pressure_drop(case, found, solids)
+    mass = solids * case.particle_density * np.pi / 4 * diameter**2
+    found.put("bed_mass", mass, "kg", "definition", note="of the settled bed")
     index = groups.group_index(
         diameter_sv=case.diameter_sv,
         boundaries=groups.Boundaries(found["size_ca"], found["size_ab"], found["size_bd"]),

@@ -38,7 +38,7 @@ ELUTRIATION: tuple[Method, ...] = (
     Method("yagi-aochi-1955", "carryover_flux", "Yagi & Aochi 1955", "Yagi & Aochi (1955); Kunii & Levenspiel 1991, ex. 7.5",
            {"diameter": (80e-6, 300e-6)}, FOREIGN, "looked up", "v", f"Small columns; {RANGE_FROM_MEMORY}. Shown, not combined."),
     Method("elutriation-mean", "carryover_flux", "geometric mean of the laws in range", "this project's rule (psdflow.carryover.elutriation) over six published laws",
-           {}, 0.5, "from memory", "v", "Interval from the laws' spread, at least a factor of 2.7 either way. Below the critical size of Baeyens et al. 1992 the flux is held level."),
+           {}, 0.35, "from memory", "v", "Interval from the laws' spread over the root of their number and a factor of 2 that all share. Below the critical size of Baeyens et al. 1992 the flux is held level."),
 )
 
 FREEBOARD: tuple[Method, ...] = (
@@ -58,6 +58,9 @@ CYCLONE: tuple[Method, ...] = (
     Method("barth-1956", "cyclone_cut_size", "Barth 1956", "Barth, Brennst.-Wärme-Kraft 8 (1956) 1; Hoffmann & Stein, ch. 4", {}, 0.25, "looked up", "", "Swirl terms from memory."),
     Method("iozia-leith-1989", "cyclone_cut_size", "Iozia & Leith 1989", "Iozia & Leith, Aerosol Sci. Technol. 10 (1989) 491", {}, 0.25, "from memory", "", "Fitted on cyclones of 0.25 m."),
     Method("lapple-1951", "cyclone_cut_size", "Lapple 1951", "Lapple, Chem. Eng. 58 (1951) 144", {}, 0.3, "looked up", "", "Conservative for modern designs."),
+    Method("muschelknautz", "cyclone_cut_size", "Muschelknautz", "Muschelknautz & Trefz, VDI heat atlas; Hoffmann & Stein, ch. 6", {}, 0.25, "from memory", "", "Clean gas in the list; friction of smooth steel."),
+    Method("dietz-1981", "loss_rate", "Dietz 1981", "Dietz, AIChE J. 27 (1981) 888", {}, 0.3, "from memory", "", "Re-derived from its three-region balance. Shown, not combined."),
+    Method("leith-licht-1972", "loss_rate", "Leith & Licht 1972", "Leith & Licht, AIChE Symp. Ser. 68/126 (1972) 196; Koch & Licht 1977", {}, 0.3, "looked up", "", "Far too high for fines. Shown, not combined."),
     Method("stairmand-euler", "cyclone_pressure_drop", "Euler number of Stairmand's designs", "Svarovsky; Rhodes 2008, ch. 9", {}, 0.3, "from memory", "", "Clean gas."),
     Method("shepherd-lapple-1940", "cyclone_pressure_drop", "Shepherd & Lapple 1940", "Shepherd & Lapple, Ind. Eng. Chem. 32 (1940) 1246", {}, 0.35, "looked up", "", "Clean gas; the constant 16 ranges from 12 to 18."),
     Method("casal-martinez-1983", "cyclone_pressure_drop", "Casal & Martinez-Benet 1983", "Casal & Martinez-Benet, Chem. Eng. 90 (1983) 99", {}, 0.35, "from memory", "", "Clean gas."),
@@ -67,4 +70,40 @@ CYCLONE: tuple[Method, ...] = (
 )
 # fmt: on
 
-METHODS: tuple[Method, ...] = (*ELUTRIATION, *FREEBOARD, *CYCLONE)
+OTHER: tuple[Method, ...] = (
+    Method(
+        "wen-chen-1982-decay",
+        "carryover_flux_outlet",
+        "Wen & Chen 1982, freeboard",
+        "Wen & Chen, AIChE J. 28 (1982) 117; Kunii & Levenspiel 1991, ch. 7",
+        {},
+        1.0,
+        "from memory",
+        "",
+        "Decay 4 1/m (3.5 to 6.4). The ejected flux is an order of magnitude, very steep in gas density and viscosity.",
+    ),
+    Method(
+        "yang-1983",
+        "choking_flux",
+        "Yang 1983",
+        "Yang, Powder Technol. 35 (1983) 143",
+        {},
+        0.8,
+        "from memory",
+        "",
+        "Ten times Punwani's: a ceiling, not a prediction.",
+    ),
+    Method(
+        "punwani-1976",
+        "choking_flux",
+        "Punwani et al. 1976",
+        "Punwani et al. (1976); Rhodes 2008, ch. 8",
+        {},
+        0.8,
+        "from memory",
+        "",
+        "A tenth of Yang's.",
+    ),
+)
+
+METHODS: tuple[Method, ...] = (*ELUTRIATION, *FREEBOARD, *OTHER, *CYCLONE)

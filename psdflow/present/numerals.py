@@ -8,6 +8,8 @@ _FRIENDLY: dict[str, tuple[str, float]] = {
     "m": ("µm", 1e6),
     "kg/s": ("kg/h", 3600.0),
     "Pa.s": ("µPa·s", 1e6),
+    "s": ("h", 1 / 3600),
+    "kg": ("kg", 1.0),
     "m^2/kg": ("m²/kg", 1.0),
     "kg/m^3": ("kg/m³", 1.0),
     "kg/m^2/s": ("kg/m²/s", 1.0),
