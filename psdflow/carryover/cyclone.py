@@ -65,6 +65,8 @@ DESIGNS: dict[str, tuple[float, ...]] = {
 }
 DIMENSIONS = tuple(field.name for field in fields(CycloneGeometry))[1:-1]
 
+RE_ENTRAINMENT = 1.36  # inlet over saltation velocity, Kalen & Zenz 1974 (from memory)
+
 # Inlet velocity of gas cyclones, m/s (common practice, from memory).
 LOWEST_INLET_VELOCITY, HIGHEST_INLET_VELOCITY = 9.0, 27.0
 

@@ -8,8 +8,10 @@ from psdflow.carryover.cyclone import (
     DIMENSIONS,
     HIGHEST_INLET_VELOCITY,
     LOWEST_INLET_VELOCITY,
+    RE_ENTRAINMENT,
     CycloneGeometry,
     own_design,
+    saltation_velocity,
     shape_doubts,
     standard_design,
 )
@@ -58,7 +60,7 @@ def cyclone_stage(
             returned = returned + penetration - through
         penetration = through
         total_drop = total_drop + _pressure_drop(case, found, shape, flow, suffix)
-        sound = sound & _inlet(found, shape, flow, suffix, number)
+        sound = sound & _inlet(case, found, shape, flow, suffix, number)
     others = {"grade curve without loading effect": unloaded}
     if case.draws is None:
         others |= _by_model(case, flux, size)
@@ -99,7 +101,9 @@ def _pressure_drop(case: Case, found: Findings, shape: CycloneGeometry, flow: Ar
     return found.put(f"cyclone_pressure_drop{suffix}", value, "Pa", key, alternatives=every, note=note)
 
 
-def _inlet(found: Findings, shape: CycloneGeometry, flow: Array, suffix: str, number: int) -> NDArray[np.bool_]:
+def _inlet(
+    case: Case, found: Findings, shape: CycloneGeometry, flow: Array, suffix: str, number: int
+) -> NDArray[np.bool_]:
     """Inlet velocity with advice; whether it is one at which cyclones are run, so that the models hold."""
     inlet = flow / shape.inlet_area
     found.put(f"cyclone_inlet_velocity{suffix}", inlet, "m/s", "definition")
@@ -108,6 +112,14 @@ def _inlet(found: Findings, shape: CycloneGeometry, flow: Array, suffix: str, nu
         f"cyclone {number}: the inlet velocity of {{inlet:.1f}} m/s is outside {LOWEST_INLET_VELOCITY:.0f} to "
         f"{HIGHEST_INLET_VELOCITY:.0f} m/s: change its size or number",
         inlet=inlet,
+    )
+    saltation = saltation_velocity(geometry=shape, inlet_velocity=inlet, **case.grain)
+    found.put(f"cyclone_saltation_ratio{suffix}", inlet / saltation, "1", "kalen-zenz-1974", note="best near 1.25")
+    found.warn(
+        inlet > RE_ENTRAINMENT * saltation,
+        f"cyclone {number}: the inlet velocity is {{ratio:.2f}} times the saltation velocity; from {RE_ENTRAINMENT} on "
+        "caught dust may be picked up again",
+        ratio=inlet / saltation,
     )
     for doubt in shape_doubts(shape):
         found.warn(True, f"cyclone {number}: {doubt}")

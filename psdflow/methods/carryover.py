@@ -65,6 +65,7 @@ CYCLONE: tuple[Method, ...] = (
     Method("shepherd-lapple-1940", "cyclone_pressure_drop", "Shepherd & Lapple 1940", "Shepherd & Lapple, Ind. Eng. Chem. 32 (1940) 1246", {}, 0.35, "looked up", "", "Clean gas; the constant 16 ranges from 12 to 18."),
     Method("casal-martinez-1983", "cyclone_pressure_drop", "Casal & Martinez-Benet 1983", "Casal & Martinez-Benet, Chem. Eng. 90 (1983) 99", {}, 0.35, "from memory", "", "Clean gas."),
     Method("dirgo-1988", "cyclone_pressure_drop", "Dirgo 1988", "Dirgo (1988); Ramachandran et al. 1991", {}, 0.35, "from memory", "", "Clean gas."),
+    Method("kalen-zenz-1974", "cyclone_saltation_ratio", "Kalen & Zenz 1974", "Kalen & Zenz, AIChE Symp. Ser. 70/137 (1974) 388", {}, 0.2, "from memory", "", "Low loading; dimensional. In hot or thin gas it allows more than erosion does."),
     Method("cyclone-grade", "cyclone_efficiency", "grade curve with critical loading", "1/(1+(x50/x)^m): Rhodes 2008 for Stairmand's designs, Dirgo & Leith for Barth; critical loading after Muschelknautz", {}, 0.0, "from memory", "",
            "Dust above the critical loading drops out unclassified; that constant is in doubt."),
 )

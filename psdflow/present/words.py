@@ -29,7 +29,28 @@ def _fluidizes(rows: dict[str, Row]) -> str:
     share = rows[f"probability_{str(group.value).lower()}"].value
     sure = f" ({float(share or 0) * 100:.0f} % of draws and boundary sets)"
     state = f"If it fluidizes at all: {state}" if group.value == "C" else f"{state[0].upper()}{state[1:]}"
-    return f"Group {group.value}{sure}, {GROUP_MEANS[str(group.value)]}. {state}."
+    meant = _in_this_duty(str(group.value), rows)
+    return f"Group {group.value}{sure}, {GROUP_MEANS[str(group.value)]}. {state}{meant}."
+
+
+def _in_this_duty(group: str, rows: dict[str, Row]) -> str:
+    """What the group means at this duty's velocity, as the end of the sentence."""
+
+    def value(key: str) -> float | None:
+        row = rows.get(key)
+        return None if row is None or row.value is None else float(row.value)
+
+    velocity, u_mb, bubble = value("u_operating") or 0.0, value("u_mb"), value("bubble_diameter")
+    if group == "C":
+        return "; expect channels, plugs and a pressure drop below the bed's weight whatever the velocity"
+    if velocity < (value("u_mf") or 0.0):
+        return f"; it needs {digits(value('u_mf'), 2)} m/s to move"
+    if group == "A" and u_mb is not None and velocity <= u_mb:
+        return f"; below u_mb ({digits(u_mb, 2)} m/s), so it expands without bubbles"
+    size = f", about {digits(bubble, 2)} m at the surface" if bubble is not None else ""
+    if group == "A":
+        return f"; past its bubble-free window, which ends at {digits(u_mb, 2)} m/s; bubbles stay limited{size}"
+    return f"; bubbles grow with height{size}"
 
 
 def _cohesion(rows: dict[str, Row]) -> str:

@@ -154,3 +154,45 @@ def test_critical_loading():
     assert thin == pytest.approx(0.025 * 0.3545 * 0.01**0.5808, rel=1e-3)
     either = [models.critical_loading(cut=3e-6, median_size=1e-5, loading=c) for c in (0.0999999, 0.1000001)]
     assert either[0] == pytest.approx(either[1], rel=1e-5)
+
+
+@pytest.mark.parametrize(
+    ("loading", "limit", "overall"), [(0.001, 4.468e-4, 0.9812), (0.1, 8.862e-3, 0.99186), (1.0, 0.02124, 0.99455)]
+)
+def test_muschelknautz_overall(loading, limit, overall):
+    """The same case with a log-normal feed, 10 µm and geometric s.d. 2, slope 5 (by hand from the method, from memory):
+    critical loading and overall efficiency with the efficiency in the friction iterated."""
+    from scipy.stats import norm
+
+    from psdflow.carryover.muschelknautz import GRADE_SLOPE, muschelknautz_cut
+
+    edges = np.geomspace(1e-7, 1e-3, 2001)
+    share = np.diff(norm.cdf(np.log(edges / 10e-6) / np.log(2)))
+    size, caught = np.sqrt(edges[1:] * edges[:-1]), 0.95
+    for _ in range(6):
+        cut = muschelknautz_cut(geometry=HE, flow=FLOW, loading=loading, efficiency=caught, **AIR)
+        grade = models.grade_efficiency(size=size, cut=cut, slope=np.asarray(GRADE_SLOPE))
+        most = models.critical_loading(cut=cut, median_size=10e-6, loading=loading)
+        through = models.penetration_with_loading(penetration=1 - grade, loading=loading, limit=most)
+        caught = 1 - float((share * through).sum())
+    assert most == pytest.approx(limit, rel=0.012)
+    assert caught == pytest.approx(overall, abs=4e-4)
+
+
+def test_davis_cornwell():
+    """Davis & Cornwell, standard cyclone (from memory): D 0.5 m, 4 m³/s, 800 kg/m³: 2.41 µm with b rounded to 0.13, 2.322 with
+    0.125; 94.5 to 95 % at 10 µm."""
+    shape = standard_design("lapple-general-purpose", 0.5)
+    gas = {"particle_density": 800, "fluid_density": 0.0, "fluid_viscosity": 18.5e-6}
+    cut = models.lapple_cut(geometry=shape, flow=4.0, turns=6, **gas)
+    assert cut * 1e6 == pytest.approx(2.322, abs=0.005)
+    assert models.grade_efficiency(size=10e-6, cut=cut, slope=np.asarray(2.0)) == pytest.approx(0.945, abs=0.006)
+
+
+def test_catch_and_loss_make_the_inlet():
+    """E x catch + (1 - E) x loss = feed for every class (Rhodes 2008, mass balance)."""
+    feed = np.array([0.2, 0.5, 0.3])
+    grade = models.grade_efficiency(size=np.array([1, 3, 9]) * 1e-6, cut=np.asarray(2e-6), slope=np.asarray(2.0))
+    through = models.penetration_with_loading(penetration=1 - grade, loading=0.5, limit=0.02)
+    assert feed * (1 - through) + feed * through == pytest.approx(feed)
+    assert np.all(through <= 1 - grade)
