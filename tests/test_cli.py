@@ -100,7 +100,7 @@ def test_every_key_is_there_or_absent_with_a_reason():
 
 
 def test_out_folder(tmp_path):
-    result = run("assess", REPORT, *CARRIER, "--out", str(tmp_path / "o"))
+    result = run("assess", REPORT, *CARRIER, "--out", str(tmp_path / "o"), "--draws", "50")
     assert result.exit_code == 0, result.output
     names = {path.name for path in (tmp_path / "o").iterdir()}
     assert {"BW-0412-sheet.csv", "BW-0412-distribution.svg", "BW-0412-velocities.png", "assessment.json"} <= names
@@ -120,7 +120,7 @@ def test_two_lots_of_one_name_get_two_sheets(tmp_path):
 
 def test_the_same_bytes_twice(tmp_path):
     for name in ("a", "b"):
-        run("assess", REPORT, *CARRIER, "--out", str(tmp_path / name))
+        run("assess", REPORT, *CARRIER, "--out", str(tmp_path / name), "--draws", "50")
     for path in (tmp_path / "a").iterdir():
         assert path.read_bytes() == (tmp_path / "b" / path.name).read_bytes(), path.name
 
@@ -186,6 +186,7 @@ def test_read_shows_what_was_understood(tmp_path):
 
 def test_methods():
     assert "Wen & Yu 1966" in run("methods").output
+    assert "u_mf, recommended:" in run("methods", "u_mf").output
     assert "Bi & Grace" not in run("methods", "u_mf").output
     assert "quantities with methods" in refused(run("methods", "speed"))
 

@@ -13,7 +13,7 @@ from numpy.typing import ArrayLike, NDArray
 
 Array = NDArray[np.float64]
 
-_HALVINGS = 60
+_HALVINGS = 48  # 1e-14 of the bracket
 
 
 class BedBalance(NamedTuple):

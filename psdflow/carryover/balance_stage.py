@@ -14,7 +14,7 @@ STEADY = "bed_d32_steady carryover_rate_steady loss_rate_steady overflow_rate_st
 METHOD = "class balance"
 FINES = 45e-6  # m
 GONE = 0.05  # share of the first charge's fines that counts as gone
-_HORIZON = np.geomspace(60.0, 3.15e8, 160)  # s, a minute to ten years
+LONGEST = 3.15e8  # s, ten years: beyond that fines count as staying
 
 
 def bed_balance(case: Case, found: Findings, constant: Array, returned: Array) -> BedBalance | None:
@@ -62,22 +62,29 @@ def balance_stage(case: Case, found: Findings, constant: Array, returned: Array,
         "the bed can't be held: more is carried away for good than the {feed:.0f} kg/h fed",
         feed=balance.feed_rate * 3600,
     )
-    if case.draws is None:
-        found.put(
-            "fines_gone_time", _fines_gone(case, balance), "s", METHOD, note="95 % of the first fines below 45 µm"
-        )
+    note = "95 % of the first fines below 45 µm, at the steady overflow"
+    found.put("fines_gone_time", _fines_gone(case, balance, overflow), "s", METHOD, note=note)
 
 
-def _fines_gone(case: Case, balance: BedBalance) -> Array:
-    """Time (s) until 95 % of the first charge's fines have left; NaN if it had none or ten years aren't enough."""
-    history = over_time(balance, balance.feed_share, _HORIZON, steps_between=4)
+def _fines_gone(case: Case, balance: BedBalance, overflow: Array) -> Array:
+    """Time (s) until 95 % of the first charge's fines have left, at the steady overflow; NaN if it had none or they stay.
+
+    Each class of the first charge decays with its own rate: ``exp(-(Q + loss_i) t / M)``; found by bisection.
+    """
     fine = case.report.edges[..., 1:] <= FINES * (1 + 1e-9)
     weight = np.where(fine, balance.feed_share, 0.0)
     start = weight.sum(axis=-1)
-    left = (history.first_charge * weight[..., None, :]).sum(axis=-1) / np.where(start > 0, start, 1.0)[..., None]
-    gone = left <= GONE
-    when = _HORIZON[gone.argmax(axis=-1)]
-    return np.where(gone.any(axis=-1) & (start > 0), when, np.nan)
+    rate = (np.nan_to_num(overflow)[..., None] + balance.loss_constant) / balance.bed_mass[..., None]
+    low, high = np.zeros(start.shape), np.full(start.shape, LONGEST)
+
+    def left(time: Array) -> Array:
+        return np.asarray((weight * np.exp(-rate * time[..., None])).sum(axis=-1))
+
+    for _ in range(50):
+        middle = (low + high) / 2
+        more = left(middle) > GONE * start
+        low, high = np.where(more, middle, low), np.where(more, high, middle)
+    return np.where((start > 0) & (left(np.full(start.shape, LONGEST)) <= GONE * start), high, np.nan)
 
 
 def time_table(report: SizeDistribution, balance: BedBalance, times: Array) -> dict[str, Array]:

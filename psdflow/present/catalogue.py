@@ -6,6 +6,7 @@ from rich.text import Text
 
 from psdflow.errors import InputError
 from psdflow.methods import Method, catalogue
+from psdflow.methods.rules import RULES
 from psdflow.present.numerals import digits
 
 
@@ -21,7 +22,9 @@ def catalogue_page(quantity: str | None = None) -> RenderableType:
     if not entries:
         known = ", ".join(dict.fromkeys(entry.quantity for entry in catalogue().values()))
         raise InputError(f'no method gives "{quantity}"; quantities with methods are {known}')
-    return Group(*(_entry(entry) for entry in entries))
+    quantities = dict.fromkeys(entry.quantity for entry in entries)
+    rules = [Text.assemble((f"{key}, recommended: ", "bold"), RULES[key]) for key in quantities if key in RULES]
+    return Group(*rules, Text(""), *(_entry(entry) for entry in entries))
 
 
 def _entry(entry: Method) -> RenderableType:
