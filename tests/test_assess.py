@@ -166,3 +166,37 @@ def test_groups_in_order_of_size():
     ]
     assert letters == sorted(letters, key="CABD".index)
     assert set(letters) == set("CABD")
+
+
+def test_spouting_of_a_group_d_powder():
+    """Sheet values of a wheat-like powder in a spouted bed: by hand from Mathur & Gishler 1955 and McNab & Bridgwater 1977
+    (from memory) 0.847 m/s and 0.686 m; none for a group A powder, none without an inlet."""
+    bed = {"diameter": 0.152, "settled_height": 0.30, "inlet_diameter": 0.0125}
+    duty = Duty(name="d", fluid={"density": 1.2, "viscosity": 1.8e-5}, velocity=0.9, bed=bed)
+    grain = SizeDistribution.of([3.599e-3, 3.601e-3], [1.0], measured_by="laser", quantity="volume")
+    found = assess(grain, Material(name="wheat", particle_density=1380, sphericity=1.0), duty, draws=50)
+    assert str(found["group"]) == "D"
+    assert float(found["u_spout_min"]) == pytest.approx(0.847, abs=0.002)
+    assert float(found["height_spout_max"]) == pytest.approx(0.686, abs=0.003)
+    fine = {row.key: row for row in assess(lot(), MATERIAL, duty, draws=50).rows()}
+    assert fine["u_spout_min"].value is None
+    assert "group D" in fine["u_spout_min"].note
+    other = {row.key: row.note for row in assess(lot(), MATERIAL, DRYER, draws=0).rows() if row.value is None}
+    assert "inlet_diameter" in other["u_spout_min"]
+
+
+def test_tolerances_of_the_duty_are_drawn():
+    """A doubtful temperature moves density and viscosity together; a doubtful velocity moves the flux."""
+    state = {"gas": "air", "temperature": "85 +- 20 degC", "pressure": "1.05 +- 0.05 bar"}
+    fields = {key: getattr(DRYER, key) for key in DRYER.model_fields_set}
+    warm = assess(lot(), MATERIAL, Duty(**{**fields, "fluid": state}))
+    low, high = float(warm.low["fluid_density"]), float(warm.high["fluid_density"])
+    assert high / low == pytest.approx(np.exp(2 * np.hypot(20 / 358.15, 0.05 / 1.05)), rel=0.01)  # ideal gas, 95 %
+    assert warm.low["fluid_viscosity"] < warm["fluid_viscosity"] < warm.high["fluid_viscosity"]
+    gusty = assess(lot(), MATERIAL, Duty(**{**fields, "velocity": "0.25 +- 0.05 m/s"}))
+    assert gusty.low["u_operating"] == pytest.approx(0.20, abs=0.002)
+    steady = assess(lot(), MATERIAL, DRYER)
+    assert (
+        gusty.high["carryover_flux"] / gusty.low["carryover_flux"]
+        > steady.high["carryover_flux"] / steady.low["carryover_flux"]
+    )

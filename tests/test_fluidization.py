@@ -219,7 +219,7 @@ def test_groups_follow_size(density, name, fines):
     if density <= FLUIDS[name][0] + 1:
         return
     sets = groups.boundary_sizes(particle_density=density, fines_45um=fines, **fluid(name))
-    assert tuple(sets) == groups.BOUNDARY_SETS
+    assert tuple(sets) == (*groups.BOUNDARY_SETS, *groups.SHOWN_SETS)
     for key, boundaries in sets.items():
         assert 0 < boundaries.size_ca <= boundaries.size_ab <= boundaries.size_bd, key
         index = groups.group_index(diameter_sv=np.logspace(-8, 0, 200), boundaries=boundaries)
@@ -412,7 +412,7 @@ def test_catalogue_covers_every_result():
     found["u_mf"].add("wen-yu-chitester-mean")
     transitions = regimes.transition_velocities(diameter_sv=2e-4, particle_density=2500.0, bed_diameter=0.3, **AIR)
     found |= {quantity: set(methods) for quantity, methods in transitions.items()}
-    found["group"] = set(groups.BOUNDARY_SETS)
+    found["group"] = {*groups.BOUNDARY_SETS, *groups.SHOWN_SETS}
     found["u_t"] = {*terminal.DRAG_LAWS, "haider-levenspiel-1989-explicit", "stokes-1851"}
     found["u_mb"] = set(bubbling.minimum_bubbling_velocities(diameter_sv=2e-4, **AIR))
     found["bubble_diameter"] = set(

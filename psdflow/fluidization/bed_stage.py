@@ -53,7 +53,7 @@ def gas_bed(case: Case, found: Findings) -> None:
     vessel = case.duty.bed
     if vessel is None or vessel.settled_height is None:
         found.miss(
-            "bed_pressure_drop bed_mass expanded_height bubble_diameter bubble_flow dense_flow bubble_rise_velocity bubble_fraction "
+            "bed_pressure_drop bed_mass bed_voidage expanded_height bubble_diameter bubble_flow dense_flow bubble_rise_velocity bubble_fraction "
             "u_ms_slug slug_kind",
             NO_BED,
         )
@@ -179,6 +179,8 @@ def _height(
         in_range=inside,
         alternatives={key: value * height_mf for key, value in every.items()},
     )
+    voidage = 1 - (1 - found["voidage_mf"]) / ratio
+    found.put("bed_voidage", voidage, "1", method, in_range=inside, note="of the whole expanded bed, bubbles included")
 
 
 def liquid_bed(case: Case, found: Findings) -> None:
@@ -222,6 +224,7 @@ def liquid_bed(case: Case, found: Findings) -> None:
     height = np.where(carried, np.nan, solids / (1 - np.minimum(voidage, 0.999)))
     note = "mean size only: a wide powder sorts itself by height"
     found.put("expanded_height", height, "m", "richardson-zaki-1954", note=note)
+    found.put("bed_voidage", np.where(carried, np.nan, voidage), "1", "richardson-zaki-1954", note=note)
     found.warn(carried, "the liquid carries the mean grain out of the bed")
 
 

@@ -152,6 +152,23 @@ BOUNDARY_SETS = (
 )
 
 
+SHOWN_SETS = (
+    "goossens-1998",
+)  # evaluated beside the others, without a vote: its A/B line moves the wrong way with pressure
+
+
+def goossens_size(
+    *, archimedes: float, particle_density: ArrayLike, fluid_density: ArrayLike, fluid_viscosity: ArrayLike
+) -> NDArray[np.float64]:
+    """Size (m) at a fixed Archimedes number: 88.5 for A/B, 176 900 for B/D.
+
+    The number for C/A is remembered both as 9.8 and as 0.97 and isn't used. Source: Goossens 1998 (from memory).
+    """
+    rho_f = np.asarray(fluid_density, float)
+    difference = sinking(particle_density, rho_f) - rho_f
+    return np.cbrt(archimedes * np.asarray(fluid_viscosity, float) ** 2 / (rho_f * difference * GRAVITY))
+
+
 def boundary_sizes(
     *,
     particle_density: ArrayLike,
@@ -160,7 +177,7 @@ def boundary_sizes(
     fines_45um: ArrayLike = 0.0,
     voidage_mf: ArrayLike = VOIDAGE_GELDART,
 ) -> dict[str, Boundaries]:
-    """The three boundary sizes by every set of ``BOUNDARY_SETS``.
+    """The three boundary sizes by every set of ``BOUNDARY_SETS`` and ``SHOWN_SETS``.
 
     Parameters
     ----------
@@ -202,6 +219,9 @@ def boundary_sizes(
         "grace-1986": ordered(ca, grace_ab_size(**three), grace_bd_size(**three)),
         "molerus-1982-weak": molerus(WEAK_CONTACT_FORCE),
         "molerus-1982-strong": molerus(STRONG_CONTACT_FORCE),
+        "goossens-1998": ordered(
+            ca, goossens_size(archimedes=88.5, **three), goossens_size(archimedes=176_900.0, **three)
+        ),
     }
 
 

@@ -198,8 +198,10 @@ def _group(case: Case, found: Findings) -> None:
         moved = case.diameter_sv * case.method_scatter(f"group {key}", np.full((), key))
         index = groups.group_index(diameter_sv=moved, boundaries=lines)
         letters[key] = np.array(list(groups.GROUPS))[index]
+        if key in groups.SHOWN_SETS:
+            continue
         votes += np.broadcast_to(index, found.shape)[..., None] == np.arange(len(groups.GROUPS))
-    share = votes / len(sets)
+    share = votes / len(groups.BOUNDARY_SETS)
     winner = np.array(list(groups.GROUPS))[share.argmax(axis=-1)]
     found.put("group", winner, "word", "boundary sets", alternatives=letters, note="most votes of the boundary sets")
     for position, letter in enumerate(groups.GROUPS):

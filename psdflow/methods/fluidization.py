@@ -215,6 +215,8 @@ GROUP: tuple[Method, ...] = (
            "Grace, Can. J. Chem. Eng. 64 (1986) 353",
            {}, 0.2, "from memory", "sv",
            "B/D lies 1.6 to 1.9 times above Geldart's. C/A as geldart-1973. Scatter of a line's size, judged."),
+    Method("goossens-1998", "group", "Goossens 1998", "Goossens, Powder Technol. 98 (1998) 48",
+           {}, 0.25, "from memory", "sv", "Shown, no vote: an Ar-only A/B line moves the wrong way with pressure. C/A as geldart-1973. Scatter of a line's size, judged."),
     Method("molerus-1982-weak", "group", "Molerus 1982, 8.76e-8 N",
            "Molerus, Powder Technol. 33 (1982) 81",
            {}, 0.25, "from memory", "sv",

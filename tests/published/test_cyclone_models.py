@@ -1,5 +1,7 @@
 """Cyclone models against textbook cases and one cross-model case computed by hand."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 
@@ -196,3 +198,14 @@ def test_catch_and_loss_make_the_inlet():
     through = models.penetration_with_loading(penetration=1 - grade, loading=0.5, limit=0.02)
     assert feed * (1 - through) + feed * through == pytest.approx(feed)
     assert np.all(through <= 1 - grade)
+
+
+def test_rhodes_example_9_2_design(monkeypatch):
+    """Rhodes 2008, WE 9.2 (from memory): Eu 384, Stk50 1e-3, 10 m³/s in two cyclones of 1.67 m: 1200 Pa and 9.85 µm."""
+    monkeypatch.setitem(models.SIMILARITY, "example", (1e-3, 384.0))
+    shape = replace(standard_design("stairmand-high-efficiency", 1.6702), design="example")
+    gas = {"particle_density": 2500, "fluid_density": 1.2, "fluid_viscosity": 18.4e-6}
+    assert models.similarity_cut(geometry=shape, flow=5.0, **gas) * 1e6 == pytest.approx(9.85, abs=0.01)
+    assert models.pressure_drops(geometry=shape, flow=5.0, fluid_density=1.2)["stairmand-euler"] == pytest.approx(
+        1200, abs=2
+    )
