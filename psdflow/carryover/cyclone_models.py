@@ -137,6 +137,23 @@ def cut_sizes(
     }
 
 
+def scaled_size(
+    *,
+    size: ArrayLike,
+    body_diameter: tuple[float, float],
+    flow: tuple[float, float],
+    density_difference: tuple[float, float],
+    fluid_viscosity: tuple[float, float],
+) -> Array:
+    """Size (m) that a similar cyclone catches as well as a tested one catches ``size``; pairs are (tested, other), SI.
+
+    ``x2 = x1 sqrt[(D2/D1)³ (Q1/Q2)(Δρ1/Δρ2)(µ2/µ1)]``. Source: Stairmand; Coulson & Richardson vol. 6, ch. 10 (from memory).
+    """
+    (d1, d2), (q1, q2) = body_diameter, flow
+    (rho1, rho2), (mu1, mu2) = density_difference, fluid_viscosity
+    return np.asarray(np.asarray(size, float) * np.sqrt((d2 / d1) ** 3 * (q1 / q2) * (rho1 / rho2) * (mu2 / mu1)))
+
+
 def iozia_leith_slope(*, geometry: CycloneGeometry, cut: ArrayLike) -> Array:
     """Exponent of their grade curve, ``ln β = 0.62 - 0.87 ln(x50/cm) + 5.21 ln(ab/D²) + 1.05 ln(ab/D²)²``, held to 2..8.
 

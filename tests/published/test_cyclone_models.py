@@ -209,3 +209,18 @@ def test_rhodes_example_9_2_design(monkeypatch):
     assert models.pressure_drops(geometry=shape, flow=5.0, fluid_density=1.2)["stairmand-euler"] == pytest.approx(
         1200, abs=2
     )
+
+
+def test_coulson_richardson_example_10_4():
+    """Coulson & Richardson vol. 6, ex. 10.4 (from memory): nitrogen at 150 °C, 4 x 0.42 m at 1000 m³/h each against the tested
+    0.203 m at 223 m³/h: scaling factor 1.42, overall 88.7 % (88.62 without the print's rounding)."""
+    factor = models.scaled_size(
+        size=1.0,
+        body_diameter=(0.203, 0.42),
+        flow=(223.0, 1000.0),
+        density_difference=(2000.0, 2500.0),
+        fluid_viscosity=(0.018e-3, 0.023e-3),
+    )
+    assert factor == pytest.approx(1.42, abs=0.005)
+    share, caught = [10, 15, 10, 10, 25, 20, 6, 4], [98, 97, 96, 95, 93, 86, 72, 10]
+    assert np.dot(share, caught) / 100 == pytest.approx(88.7, abs=0.1)
