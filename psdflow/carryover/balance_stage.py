@@ -35,7 +35,7 @@ def balance_stage(case: Case, found: Findings, constant: Array, returned: Array,
     balance = bed_balance(case, found, constant, returned)
     found.balance = balance
     if balance is None:
-        found.miss(STEADY, "the duty has no feed:, or its bed no settled_height")
+        found.miss(STEADY, "the duty gives no feed, or no settled_height of the bed")
         return
     if case.duty.attrition is None:
         found.assumptions.append("no attrition in the bed's balance (attrition not given)")
@@ -51,7 +51,7 @@ def balance_stage(case: Case, found: Findings, constant: Array, returned: Array,
     if case.duty.cyclones:
         found.put("loss_rate_steady", (carried * penetration).sum(axis=-1), "kg/s", METHOD, note=note)
     else:
-        found.miss("loss_rate_steady", "the duty has no cyclones:; all that is carried over leaves")
+        found.miss("loss_rate_steady", "the duty names no cyclones, so all that is carried over leaves")
     found.put("overflow_rate_steady", overflow, "kg/s", METHOD, note=note)
     first = (balance.loss_constant * balance.feed_share).sum(axis=-1)
     held = np.isfinite(overflow)

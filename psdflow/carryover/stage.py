@@ -47,12 +47,12 @@ def carryover_stage(case: Case, found: Findings) -> None:
         found.miss(f"{RATES} {LOSSES} {STEADY}", "elutriation laws and gas cyclones don't apply in a liquid")
         return
     if case.duty.bed is None:
-        found.miss(f"{RATES} {LOSSES} {STEADY}", "the duty has no bed: with a diameter")
+        found.miss(f"{RATES} {LOSSES} {STEADY}", "the duty gives no bed with a diameter")
         return
     stream = _flux(case, found)
     _disengaging(case, found)
     if not case.duty.cyclones:
-        found.miss(LOSSES, "the duty has no cyclones:; all that is carried over leaves")
+        found.miss(LOSSES, "the duty names no cyclones, so all that is carried over leaves")
         returned, penetration = np.zeros_like(stream.flux), np.ones_like(stream.flux)
     else:
         returned, penetration = cyclone_stage(case, found, stream.fine, stream.size, stream.flux, stream.parts)
@@ -249,7 +249,7 @@ def _disengaging(case: Case, found: Findings) -> None:
     tdh = found.put("tdh", value, "m", key, in_range=inside, alternatives=every, note="above the bed surface")
     bubble = found.get("bubble_diameter")
     if bed.freeboard_height is None or bubble is None:
-        found.miss("carryover_flux_outlet", "the bed has no freeboard_height: or no settled_height:")
+        found.miss("carryover_flux_outlet", "the duty gives no freeboard_height or no settled_height")
     if bed.freeboard_height is not None:
         free = bed.freeboard_height.value
         if bubble is not None:

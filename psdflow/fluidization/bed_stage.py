@@ -15,7 +15,7 @@ from psdflow.methods import in_range
 from psdflow.results import Findings
 
 GAS_ONLY = "applies to gas-fluidized beds; the fluid is a liquid"
-NO_BED = "the duty has no bed: with diameter and settled_height"
+NO_BED = "the duty gives no bed with diameter and settled_height"
 PERFORATED_PITCH = 0.03  # m, assumed spacing of holes or nozzles where the duty gives none
 
 
@@ -234,7 +234,7 @@ def spouting(case: Case, found: Findings) -> None:
     keys = "u_spout_min height_spout_max"
     if vessel is None or vessel.inlet_diameter is None or vessel.settled_height is None:
         found.miss(
-            keys, "the duty's bed has no inlet_diameter: with a settled_height (spouted beds have one central inlet)"
+            keys, "the duty gives no inlet_diameter with a settled_height (a spouted bed has one central inlet)"
         )
         return
     shape: dict[str, Any] = {
