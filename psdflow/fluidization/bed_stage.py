@@ -233,9 +233,7 @@ def spouting(case: Case, found: Findings) -> None:
     vessel = case.duty.bed
     keys = "u_spout_min height_spout_max"
     if vessel is None or vessel.inlet_diameter is None or vessel.settled_height is None:
-        found.miss(
-            keys, "the duty gives no inlet_diameter with a settled_height (a spouted bed has one central inlet)"
-        )
+        found.miss(keys, "the duty gives no inlet_diameter with a settled_height (a spouted bed has one central inlet)")
         return
     shape: dict[str, Any] = {
         "diameter": case.diameter_v,
