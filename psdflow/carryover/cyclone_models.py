@@ -257,13 +257,17 @@ def pressure_drops(*, geometry: CycloneGeometry, flow: ArrayLike, fluid_density:
     return {key: np.asarray(value * head) for key, value in heads.items()}
 
 
+LEAST_LOADING = 1e-3  # kg/kg; the formula falls faster than the loading below it, which would clean an almost clean gas
+
+
 def critical_loading(*, cut: ArrayLike, median_size: ArrayLike, loading: ArrayLike) -> Array:
     """Mass loading (kg/kg) the gas can carry into the vortex, ``0.025 (x50/x_med)(10 c0)^k``; the rest drops at once.
 
-    k = 0.15 from c0 = 0.1 on, ``-0.11 - 0.10 ln c0`` below. Source: Muschelknautz, as in Hoffmann & Stein (from
+    k = 0.15 from c0 = 0.1 on, ``-0.11 - 0.10 ln c0`` below; held level below c0 = 0.001, where nothing drops
+    out. Source: Muschelknautz, as in Hoffmann & Stein (from
     memory; the constant is in doubt).
     """
-    c0 = np.maximum(np.asarray(loading, float), 1e-12)
+    c0 = np.maximum(np.asarray(loading, float), LEAST_LOADING)
     k = np.where(c0 >= 0.1, 0.15, -0.11 - 0.10 * np.log(c0))
     return np.asarray(0.025 * np.asarray(cut, float) / np.asarray(median_size, float) * (10 * c0) ** k)
 

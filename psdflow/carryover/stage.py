@@ -20,6 +20,7 @@ from psdflow.methods import distance_outside, in_range
 from psdflow.results import Findings
 
 COMMON_DOUBT = 0.35  # standard deviation of ln(flux) that all laws share: a factor of 2 either way. Judgement
+CHOKING_FROM = 1.0  # m/s: the choking laws are for transport lines, not for slow beds
 NEARLY_AS_NEAR = 0.5  # ln units: laws this much further out of range than the nearest one are still combined
 FINENESS, MOST_PARTS = 60, 5  # sub-classes aimed at, the most a class is cut into: within 0.5 % of ten times as many
 RATES = "carryover_flux carryover_rate carryover_d50 tdh carryover_flux_outlet choking_flux"
@@ -300,7 +301,7 @@ def _choking(case: Case, found: Findings, total: Array, diameter: float) -> None
         "choking_flux", every["yang-1983"], "kg/m^2/s", "yang-1983", alternatives=every, note="of the d10 grain"
     )
     found.warn(
-        (total > most) & (most > 0),
+        (total > most) & (most > 0) & (case.velocity >= CHOKING_FROM),
         "the carryover ({flux:.2g} kg/m²/s) exceeds the choking flux of dilute upflow ({most:.2g} kg/m²/s, Yang 1983): "
         "it may be overstated",
         flux=total,

@@ -224,3 +224,12 @@ def test_coulson_richardson_example_10_4():
     assert factor == pytest.approx(1.42, abs=0.005)
     share, caught = [10, 15, 10, 10, 25, 20, 6, 4], [98, 97, 96, 95, 93, 86, 72, 10]
     assert np.dot(share, caught) / 100 == pytest.approx(88.7, abs=0.1)
+
+
+def test_an_almost_clean_gas_gets_no_credit_for_its_loading():
+    """Below 0.001 kg/kg the critical loading stays level, so nothing drops out unclassified (physical limit)."""
+    loading = np.array([1e-7, 1e-5, 1e-4])
+    limit = models.critical_loading(cut=2.5e-6, median_size=10e-6, loading=loading)
+    assert np.all(limit > loading)
+    passed = np.array([[0.5, 0.1]] * 3)
+    assert models.penetration_with_loading(penetration=passed, loading=loading, limit=limit) == pytest.approx(passed)
