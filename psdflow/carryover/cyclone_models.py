@@ -263,8 +263,8 @@ LEAST_LOADING = 1e-3  # kg/kg; the formula falls faster than the loading below i
 def critical_loading(*, cut: ArrayLike, median_size: ArrayLike, loading: ArrayLike) -> Array:
     """Mass loading (kg/kg) the gas can carry into the vortex, ``0.025 (x50/x_med)(10 c0)^k``; the rest drops at once.
 
-    k = 0.15 from c0 = 0.1 on, ``-0.11 - 0.10 ln c0`` below; held level below c0 = 0.001, where nothing drops
-    out. Source: Muschelknautz, as in Hoffmann & Stein (from
+    k = 0.15 from c0 = 0.1 on, ``-0.11 - 0.10 ln c0`` below; held level below c0 = 0.001.
+    Source: Muschelknautz, as in Hoffmann & Stein (from
     memory; the constant is in doubt).
     """
     c0 = np.maximum(np.asarray(loading, float), LEAST_LOADING)
